@@ -1,0 +1,3 @@
+export * from './categories.js'
+export * from './lifecycle.js'
+export * from './urgency.js'

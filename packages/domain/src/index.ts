@@ -1,0 +1,6 @@
+export * from './call/index.js'
+export * from './label/index.js'
+export * from './people/index.js'
+export * from './sizing/index.js'
+export * from './stock/index.js'
+export * from './turnaround/index.js'

@@ -1,0 +1,2 @@
+export * from './permissions.js'
+export * from './roles.js'

@@ -1,0 +1,3 @@
+export * from './choose-unit.js'
+export * from './eligibility.js'
+export * from './parts.js'
