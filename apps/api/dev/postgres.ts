@@ -1,6 +1,6 @@
 import { execFile, spawn, type ChildProcess } from 'node:child_process'
 import { randomUUID } from 'node:crypto'
-import { accessSync, constants, existsSync, readdirSync, readFileSync } from 'node:fs'
+import { accessSync, constants, existsSync, readdirSync, readFileSync, rmSync } from 'node:fs'
 import { chown, mkdir, mkdtemp, rm, writeFile } from 'node:fs/promises'
 import { createServer } from 'node:net'
 import { tmpdir } from 'node:os'
@@ -33,8 +33,11 @@ export function findServer(): string {
     ...versions.map((version) => join(debian, version, 'bin')),
     ...(process.env['PATH'] ?? '').split(delimiter),
   ]
-  const found = folders.find((folder) => ['initdb', 'pg_ctl', 'postgres'].every((program) => isProgram(join(folder, program))))
-  if (found === undefined) throw new InTheWay('PostgreSQL is not on this machine; ./docker-less-dev.sh installs it.')
+  const found = folders.find((folder) =>
+    ['initdb', 'pg_ctl', 'postgres'].every((program) => isProgram(join(folder, program))),
+  )
+  if (found === undefined)
+    throw new InTheWay('PostgreSQL is not on this machine; ./docker-less-dev.sh installs it.')
   return found
 }
 
@@ -100,8 +103,18 @@ export async function initCluster(server: string, data: string, password: string
       await chown(join(secret, 'password'), user.uid, user.gid)
       await chown(secret, user.uid, user.gid)
     }
-    const flags = ['--no-sync', '--encoding=UTF8', '--locale=C.UTF-8', '--auth=scram-sha-256', '--username=bellpull']
-    await run(join(server, 'initdb'), [...flags, `--pwfile=${join(secret, 'password')}`, '-D', data], asServer(user))
+    const flags = [
+      '--no-sync',
+      '--encoding=UTF8',
+      '--locale=C.UTF-8',
+      '--auth=scram-sha-256',
+      '--username=bellpull',
+    ]
+    await run(
+      join(server, 'initdb'),
+      [...flags, `--pwfile=${join(secret, 'password')}`, '-D', data],
+      asServer(user),
+    )
   } finally {
     await rm(secret, { recursive: true, force: true })
   }
@@ -137,7 +150,10 @@ export interface ThrowawayServer {
  * @param settings further `name=value` settings of the server.
  * @throws {InTheWay} when PostgreSQL is missing; an error with the server's own words when it does not come up in 30 s.
  */
-export async function startThrowawayServer(durable: boolean, settings: readonly string[] = []): Promise<ThrowawayServer> {
+export async function startThrowawayServer(
+  durable: boolean,
+  settings: readonly string[] = [],
+): Promise<ThrowawayServer> {
   const server = findServer()
   const user = serverUser()
   const folder = await mkdtemp(join(tmpdir(), 'bellpull-postgres-'))
@@ -174,7 +190,10 @@ export async function startThrowawayServer(durable: boolean, settings: readonly 
 }
 
 function throwaway(child: ChildProcess, folder: string, port: number, password: string): ThrowawayServer {
-  const killAtExit = () => child.kill('SIGQUIT')
+  const killAtExit = () => {
+    child.kill('SIGQUIT')
+    rmSync(folder, { recursive: true, force: true, maxRetries: 5 })
+  }
   process.once('exit', killAtExit)
   const ended = new Promise<void>((resolve) => child.once('exit', () => resolve()))
   return {
