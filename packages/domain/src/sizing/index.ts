@@ -1,0 +1,2 @@
+export * from './head-cap.js'
+export * from './nearest-size.js'

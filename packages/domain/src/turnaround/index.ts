@@ -1,0 +1,3 @@
+export * from './arrival.js'
+export * from './proportion.js'
+export * from './quantile.js'
