@@ -73,8 +73,6 @@ export const itemView = z
     /** The label was typed, not scanned, at pull or at verify. */
     typed: z.boolean(),
     reason: z.string().nullable(),
-    /** Usable packages of the same product in the house, the held one included: "first of 3 to expire". */
-    usableCount: z.int(),
     /** A package on its way back to its bin. */
     putBack: z
       .object({ toCode: z.string(), since: instant, inspect: z.boolean(), walkOrder: z.int() })
@@ -184,7 +182,9 @@ export const CALL_COMMAND_BODIES = {
     expectedVersion,
     items: z
       .array(
-        z.strictObject({ itemId: id, ...labelInput }).refine(oneLabel, { path: ['scan'], error: LABEL_WANTED }),
+        z
+          .strictObject({ itemId: id, ...labelInput })
+          .refine(oneLabel, { path: ['scan'], error: LABEL_WANTED }),
       )
       .min(1)
       .max(20),

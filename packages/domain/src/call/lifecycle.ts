@@ -125,7 +125,9 @@ const ITEM_RULES: Readonly<Record<ItemCommandName, Rule>> = {
 }
 
 /** Commands on a whole call. Where the name is an item's too, every item of the call obeys the item's row. */
-const CALL_RULES: Readonly<Record<CallCommandName, { readonly by: readonly Role[]; readonly built: boolean }>> = {
+const CALL_RULES: Readonly<
+  Record<CallCommandName, { readonly by: readonly Role[]; readonly built: boolean }>
+> = {
   readBack: { by: ['scrub', 'circulator', 'charge'], built: true },
   confirm: { by: CALLERS, built: true },
   accept: { by: FETCHERS, built: true },
@@ -179,7 +181,8 @@ function stands(item: ItemState, command: ItemCommandName, rule: Rule): boolean 
     if (command === 'use' || command === 'putBack') return item.stage === 'inRoom'
     if (command === 'pull' || command === 'verify' || command === 'open') return false
   }
-  if (command === 'implant' || command === 'use') return rule.from.includes(item.stage) && doneAs(item) === command
+  if (command === 'implant' || command === 'use')
+    return rule.from.includes(item.stage) && doneAs(item) === command
   return rule.from.includes(item.stage)
 }
 
@@ -192,8 +195,7 @@ export function commandsFor(item: ItemState, role: Role): ItemCommandName[] {
 }
 
 export type CallPermission =
-  | { readonly ok: true }
-  | { readonly ok: false; readonly because: 'wrong-role' | 'not-built' }
+  { readonly ok: true } | { readonly ok: false; readonly because: 'wrong-role' | 'not-built' }
 
 /** May somebody of this role give this command to a call at all? */
 export function callCommandPermission(command: CallCommandName, role: Role): CallPermission {

@@ -45,7 +45,9 @@ export const isNowCall = (call: Timing): boolean =>
  */
 export function escalationLevel(call: Timing, nowMs: number, expectedArrivalMs: number): 0 | 1 | 2 | 3 {
   if (call.neededAtMs === null || call.kind === 'standby') return 0
-  const from = isNowCall(call) ? call.calledAtMs : Math.max(call.calledAtMs, call.neededAtMs - expectedArrivalMs)
+  const from = isNowCall(call)
+    ? call.calledAtMs
+    : Math.max(call.calledAtMs, call.neededAtMs - expectedArrivalMs)
   const waited = nowMs - from
   const level = ESCALATE_AFTER_MS.filter((limit) => waited >= limit).length
   return level as 0 | 1 | 2 | 3

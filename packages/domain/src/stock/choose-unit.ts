@@ -33,7 +33,8 @@ export const EXPIRES_SOON_DAYS = 30
  */
 export function compareCandidates(options: ChooseOptions): (a: Candidate, b: Candidate) => number {
   const place = (unit: Candidate) => (unit.inRoom ? 0 : unit.walkOrder)
-  const rush = (unit: Candidate) => (!options.now || unit.useByOn <= options.soonUntil ? 0 : unit.inRoom ? 1 : 2)
+  const rush = (unit: Candidate) =>
+    !options.now || unit.useByOn <= options.soonUntil ? 0 : unit.inRoom ? 1 : 2
   return (a, b) =>
     rush(a) - rush(b) ||
     a.useByOn.localeCompare(b.useByOn) ||
@@ -43,7 +44,12 @@ export function compareCandidates(options: ChooseOptions): (a: Candidate, b: Can
 }
 
 /** The first `count` packages to hold, or fewer when there are not so many; the input is not modified. */
-export function chooseUnits<U extends Candidate>(units: readonly U[], count: number, options: ChooseOptions): U[] {
-  if (!Number.isInteger(count) || count < 0) throw new RangeError(`count must be a whole number, got ${count}`)
+export function chooseUnits<U extends Candidate>(
+  units: readonly U[],
+  count: number,
+  options: ChooseOptions,
+): U[] {
+  if (!Number.isInteger(count) || count < 0)
+    throw new RangeError(`count must be a whole number, got ${count}`)
   return [...units].sort(compareCandidates(options)).slice(0, count)
 }
