@@ -1,5 +1,5 @@
 import { randomBytes } from 'node:crypto'
-import pg from 'pg'
+import { administer } from '../dev/administer.js'
 import { startThrowawayServer } from '../dev/postgres.js'
 
 /** A PostgreSQL of one test run. Plain TypeScript without the application, so that any test runner can load it. */
@@ -38,16 +38,8 @@ export async function createDatabase(adminUrl: string, template?: string): Promi
   await administer(adminUrl, `CREATE DATABASE ${name}${source}`)
   const url = new URL(adminUrl)
   url.pathname = `/${name}`
-  return { url: url.href, drop: () => administer(adminUrl, `DROP DATABASE IF EXISTS ${name} WITH (FORCE)`) }
-}
-
-/** Runs one statement in the database for administration, on a connection of its own. */
-export async function administer(adminUrl: string, statement: string): Promise<void> {
-  const client = new pg.Client({ connectionString: adminUrl, connectionTimeoutMillis: 10_000 })
-  await client.connect()
-  try {
-    await client.query(statement)
-  } finally {
-    await client.end()
+  return {
+    url: url.href,
+    drop: async () => void (await administer(adminUrl, `DROP DATABASE IF EXISTS ${name} WITH (FORCE)`)),
   }
 }

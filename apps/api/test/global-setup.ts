@@ -1,6 +1,7 @@
 import type { TestProject } from 'vitest/node'
+import { administer } from '../dev/administer.js'
 import { createDataSource } from '../src/data-source.js'
-import { administer, startCluster } from './cluster.js'
+import { startCluster } from './cluster.js'
 
 /** The database that every test's own is copied from: migrated once, and closed to everybody since. */
 const TEMPLATE = 'migrated'
