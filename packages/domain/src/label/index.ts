@@ -1,2 +1,7 @@
+export { gs1CheckDigit, hasGs1CheckDigit, toGtin14 } from './gtin.js'
+export { hibcCheckCharacter } from './hibc.js'
 export { LABEL_REFUSALS, LABEL_WARNINGS } from './label.js'
 export type { Label, LabelRefusal, LabelResult, LabelScheme, LabelWarning } from './label.js'
+export { parseScan } from './scan.js'
+export { normaliseTyped, sameAsTyped } from './typed.js'
+export type { TypedEntry, TypedLabel, TypedResult } from './typed.js'

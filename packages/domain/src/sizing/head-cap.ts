@@ -16,7 +16,8 @@ export interface HeadCap {
 export const USUAL_HEAD_RATIO = 0.75
 
 function mustBePositive(name: string, value: number): void {
-  if (!Number.isFinite(value) || value <= 0) throw new RangeError(`${name} must be more than 0 mm, got ${value}`)
+  if (!Number.isFinite(value) || value <= 0)
+    throw new RangeError(`${name} must be more than 0 mm, got ${value}`)
 }
 
 /**

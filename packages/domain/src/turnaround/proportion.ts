@@ -27,5 +27,10 @@ export function wilsonInterval(k: number, n: number, confidence: Confidence = 0.
   const middle = (share + z2 / (2 * n)) / (1 + z2 / n)
   const half = (Z[confidence] / (1 + z2 / n)) * Math.sqrt((share * (1 - share)) / n + z2 / (4 * n * n))
   // At the two ends the bound is exactly 0 or 1; rounding in the formula must not leave 1e-17 beside it.
-  return { k, n, low: k === 0 ? 0 : Math.max(0, middle - half), high: k === n ? 1 : Math.min(1, middle + half) }
+  return {
+    k,
+    n,
+    low: k === 0 ? 0 : Math.max(0, middle - half),
+    high: k === n ? 1 : Math.min(1, middle + half),
+  }
 }
