@@ -11,7 +11,7 @@ const SERVER_FLOORS = [
   [/^platform\//, 0],
   [/^modules\//, 1],
   [/^migrations\//, 1],
-  [/^(data-source\.ts$|demo\/)/, 2],
+  [/^(data-source\.ts$|entities\.ts$|demo\/)/, 2],
   [/^compose\.ts$/, 3],
   [/^app\.ts$/, 4],
   [/^[^/]+$/, 5],
