@@ -95,8 +95,7 @@ export class CreateStock1796083200001 implements MigrationInterface {
         -- Copies that the statement that holds packages sorts by; a trigger keeps them true.
         place_room_id     uuid,
         walk_order        integer NOT NULL DEFAULT 0,
-        owner_rank        smallint NOT NULL GENERATED ALWAYS AS
-          (CASE owner WHEN 'owned' THEN 0 WHEN 'consigned' THEN 1 ELSE 2 END) STORED,
+        owner_rank        smallint NOT NULL DEFAULT 0,
         received_at       timestamptz NOT NULL DEFAULT now(),
         note              text,
         CONSTRAINT unit_of_item FOREIGN KEY (catalogue_item_id) REFERENCES catalogue_item (id),
@@ -125,9 +124,10 @@ export class CreateStock1796083200001 implements MigrationInterface {
       BEGIN
         SELECT l.room_id, l.walk_order INTO NEW.place_room_id, NEW.walk_order
           FROM location l WHERE l.id = NEW.location_id;
+        NEW.owner_rank := CASE NEW.owner WHEN 'owned' THEN 0 WHEN 'consigned' THEN 1 ELSE 2 END;
         RETURN NEW;
       END $$;
-      CREATE TRIGGER unit_place_is_true BEFORE INSERT OR UPDATE OF location_id ON unit
+      CREATE TRIGGER unit_place_is_true BEFORE INSERT OR UPDATE OF location_id, owner ON unit
         FOR EACH ROW EXECUTE FUNCTION unit_copy_place();
     `)
   }
