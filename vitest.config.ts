@@ -12,6 +12,8 @@ function nodeProject(name: string, root: string, test: object = {}): TestProject
     root,
     resolve: { conditions },
     ssr: { resolve: { conditions } },
+    // Global set-ups are loaded in an environment of Vitest's own.
+    environments: { __vitest__: { resolve: { conditions } } },
     test: { name, environment: 'node', include: ['{src,test}/**/*.test.ts'], ...timeouts, ...test },
   }
 }

@@ -40,20 +40,22 @@ export function tokenSecret(data: string): string {
 /** The environment of the API for a house on this machine. */
 export function apiEnvironment(
   settings: Settings,
-  with_: { databaseUrl: string; smtpPort: number; mode: 'production' | 'development' },
+  house: { databaseUrl: string; smtpPort: number; mode: 'production' | 'development' },
 ): NodeJS.ProcessEnv {
   return {
     ...process.env,
-    NODE_ENV: with_.mode,
+    NODE_ENV: house.mode,
     BELLPULL_HOST: '127.0.0.1',
     BELLPULL_PORT: String(settings.port),
-    BELLPULL_DATABASE_URL: with_.databaseUrl,
+    BELLPULL_DATABASE_URL: house.databaseUrl,
     BELLPULL_TOKEN_SECRET: tokenSecret(settings.data),
-    BELLPULL_SMTP_URL: `smtp://127.0.0.1:${with_.smtpPort}`,
+    BELLPULL_SMTP_URL: `smtp://127.0.0.1:${house.smtpPort}`,
     BELLPULL_MAIL_FROM: 'Larchwater General stores <stores@larchwater.example>',
     BELLPULL_DEMO: '1',
+    BELLPULL_HOUSE_NAME: 'Larchwater General',
     BELLPULL_HOUSE_ZONE: 'UTC',
-    BELLPULL_WEB_DIR: join(settings.root, 'apps/web/dist'),
+    // While the sources are watched, Vite serves the pages and asks this server only for data.
+    BELLPULL_WEB_DIR: house.mode === 'production' ? join(settings.root, 'apps/web/dist') : '',
     BELLPULL_LOG_LEVEL: process.env['BELLPULL_LOG_LEVEL'] ?? 'info',
   }
 }

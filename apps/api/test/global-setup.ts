@@ -1,6 +1,6 @@
 import type { TestProject } from 'vitest/node'
 import { administer } from '../dev/administer.js'
-import { createDataSource } from '../src/data-source.js'
+import { createDataSource, migrate } from '../src/data-source.js'
 import { startCluster } from './cluster.js'
 
 /** The database that every test's own is copied from: migrated once, and closed to everybody since. */
@@ -22,10 +22,10 @@ export default async function setup(project: TestProject): Promise<() => Promise
   const cluster = await startCluster()
   try {
     await administer(cluster.url(), `CREATE DATABASE ${TEMPLATE}`)
-    const dataSource = createDataSource({ url: cluster.url(TEMPLATE), poolSize: 1 })
+    const dataSource = createDataSource({ url: cluster.url(TEMPLATE), poolSize: 2 })
     await dataSource.initialize()
     try {
-      await dataSource.runMigrations()
+      await migrate(dataSource)
     } finally {
       await dataSource.destroy()
     }
