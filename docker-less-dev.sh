@@ -85,7 +85,7 @@ need_pnpm() {
 
 need_packages() {
   local stamp="$DATA/stamp/packages" wanted
-  wanted="$(cat pnpm-lock.yaml pnpm-workspace.yaml package.json ./*/package.json ./*/*/package.json <(node -p process.versions.modules) | sha256sum)"
+  wanted="$(cat pnpm-lock.yaml pnpm-workspace.yaml package.json apps/*/package.json packages/*/package.json e2e/package.json <(node -p process.versions.modules) | sha256sum)"
   if [[ -d node_modules/.pnpm && -f "$stamp" && "$(cat "$stamp")" == "$wanted" ]]; then return; fi
   say "Installing the packages (half a minute on a new machine)"
   CI=true pnpm install --frozen-lockfile --reporter=append-only

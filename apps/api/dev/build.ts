@@ -1,6 +1,6 @@
 import { createHash } from 'node:crypto'
-import { existsSync, readdirSync, readFileSync, writeFileSync } from 'node:fs'
-import { join } from 'node:path'
+import { existsSync, mkdirSync, readdirSync, readFileSync, writeFileSync } from 'node:fs'
+import { dirname, join } from 'node:path'
 import { runLogged, say, step } from './terminal.js'
 
 const SOURCES = [
@@ -35,22 +35,35 @@ export function sourceHash(root: string): string {
   return hash.digest('hex')
 }
 
+const stampOf = (root: string) => join(root, '.data/stamp/build')
+
+/** Is what the last build that went through made of these sources still there? */
+function isBuilt(root: string, hash: string): boolean {
+  const stamp = stampOf(root)
+  const same = existsSync(stamp) && readFileSync(stamp, 'utf8') === hash
+  return same && RESULTS.every((file) => existsSync(join(root, file)))
+}
+
+/** Writes down that the sources of this hash have been built. */
+export function stampBuild(root: string, hash: string): void {
+  mkdirSync(dirname(stampOf(root)), { recursive: true })
+  writeFileSync(stampOf(root), hash)
+}
+
 /**
  * Builds packages, server and web where their sources changed since the last build that went through.
  *
  * @returns the hash of the sources that the result was made from.
  */
-export async function build(root: string, log: string, signal: AbortSignal): Promise<string> {
-  const stamp = join(root, '.data/stamp/build')
+export async function build(root: string, log: string, signal?: AbortSignal): Promise<string> {
   const hash = sourceHash(root)
-  const fresh = existsSync(stamp) && readFileSync(stamp, 'utf8') === hash
-  if (fresh && RESULTS.every((file) => existsSync(join(root, file)))) {
+  if (isBuilt(root, hash)) {
     say('  · built already')
     return hash
   }
   await step('building packages, server and web', () =>
-    runLogged({ command: 'pnpm', args: ['run', 'build'], cwd: root, log, signal }),
+    runLogged({ command: 'pnpm', args: ['run', 'build'], cwd: root, log, ...(signal && { signal }) }),
   )
-  writeFileSync(stamp, hash)
+  stampBuild(root, hash)
   return hash
 }

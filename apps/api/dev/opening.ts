@@ -67,12 +67,14 @@ export class Opening {
     )
   }
 
-  /** Closes what runs; the database only when `database` says so. */
-  async close(database: boolean): Promise<boolean> {
+  /** Closes what runs, but for the processes numbered in `spare`; the database only when `database` says so. */
+  async close(database: boolean, spare: readonly number[] = []): Promise<boolean> {
     let closed = false
     for (const name of ['web', 'api', 'mail'] as const) {
-      if (this.processes.find(name) === null) this.processes.forget(name)
-      else closed = await step(`stopping ${WORDS[name]}`, () => this.processes.stop(name))
+      const pid = this.processes.find(name)?.pid
+      if (pid === undefined) this.processes.forget(name)
+      else if (!spare.includes(pid))
+        closed = await step(`stopping ${WORDS[name]}`, () => this.processes.stop(name))
     }
     if (database && (await this.database.port()) !== null)
       closed = await step('stopping PostgreSQL', () => this.database.stop())

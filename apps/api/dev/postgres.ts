@@ -1,4 +1,4 @@
-import { execFile, spawn, type ChildProcess } from 'node:child_process'
+import { execFile, spawn, type ChildProcess, type SpawnOptions } from 'node:child_process'
 import { randomUUID } from 'node:crypto'
 import { accessSync, constants, existsSync, readdirSync, readFileSync, rmSync } from 'node:fs'
 import { chown, mkdir, mkdtemp, rm, writeFile } from 'node:fs/promises'
@@ -139,6 +139,8 @@ export async function freePort(): Promise<number> {
 export interface ThrowawayServer {
   readonly port: number
   readonly password: string
+  /** Takes the server away and brings it back on the same port with the same data, as an administrator would. */
+  restart(): Promise<void>
   stop(): Promise<void>
 }
 
@@ -160,27 +162,27 @@ export async function startThrowawayServer(
   if (user) await chown(folder, user.uid, user.gid)
   const password = randomUUID()
   const data = join(folder, 'data')
+  const careless = ['fsync=off', 'full_page_writes=off', 'synchronous_commit=off', 'autovacuum=off']
+  const all = [
+    'listen_addresses=127.0.0.1',
+    'unix_socket_directories=',
+    'max_connections=200',
+    ...(durable ? [] : [...careless, 'wal_level=minimal', 'max_wal_senders=0']),
+    ...settings,
+  ]
+  const launch = async (port: number) => {
+    const args = ['-D', data, '-p', String(port), ...all.flatMap((setting) => ['-c', setting])]
+    const options: SpawnOptions = { ...asServer(user), detached: true, stdio: ['ignore', 'ignore', 'pipe'] }
+    const child = spawn(join(server, 'postgres'), args, options)
+    return { child, ...(await comesUp(child, join(data, 'postmaster.pid'))) }
+  }
   try {
     await initCluster(server, data, password, user)
-    const careless = ['fsync=off', 'full_page_writes=off', 'synchronous_commit=off', 'autovacuum=off']
-    const all = [
-      'listen_addresses=127.0.0.1',
-      'unix_socket_directories=',
-      'max_connections=200',
-      ...(durable ? [] : [...careless, 'wal_level=minimal', 'max_wal_senders=0']),
-      ...settings,
-    ]
     // Between choosing a free port and taking it somebody else may take it, so a refused start is tried on another one.
     for (let attempt = 1; ; attempt += 1) {
       const port = await freePort()
-      const args = ['-D', data, '-p', String(port), ...all.flatMap((setting) => ['-c', setting])]
-      const child = spawn(join(server, 'postgres'), args, {
-        ...asServer(user),
-        detached: true,
-        stdio: ['ignore', 'ignore', 'pipe'],
-      })
-      const came = await comesUp(child, join(data, 'postmaster.pid'))
-      if (came.up) return throwaway(child, folder, port, password)
+      const came = await launch(port)
+      if (came.up) return throwaway(came.child, folder, port, password, () => launch(port))
       if (attempt === 3) throw new Error(`PostgreSQL did not start:\n${came.words}`)
     }
   } catch (error) {
@@ -189,21 +191,36 @@ export async function startThrowawayServer(
   }
 }
 
-function throwaway(child: ChildProcess, folder: string, port: number, password: string): ThrowawayServer {
+function throwaway(
+  first: ChildProcess,
+  folder: string,
+  port: number,
+  password: string,
+  launch: () => Promise<{ child: ChildProcess; up: boolean; words: string }>,
+): ThrowawayServer {
+  let child = first
   const killAtExit = () => {
     child.kill('SIGQUIT')
     rmSync(folder, { recursive: true, force: true, maxRetries: 5 })
   }
   process.once('exit', killAtExit)
-  const ended = new Promise<void>((resolve) => child.once('exit', () => resolve()))
+  const end = async (signal: NodeJS.Signals) => {
+    const ended = new Promise<void>((resolve) => child.once('exit', () => resolve()))
+    if (child.exitCode === null && child.signalCode === null && child.kill(signal)) await ended
+  }
   return {
     port,
     password,
+    async restart() {
+      await end('SIGINT')
+      const came = await launch()
+      if (!came.up) throw new Error(`PostgreSQL did not come back:\n${came.words}`)
+      child = came.child
+    },
     async stop() {
       process.removeListener('exit', killAtExit)
       // SIGQUIT is the server's "immediate": what is thrown away needs no checkpoint.
-      child.kill('SIGQUIT')
-      await ended
+      await end('SIGQUIT')
       await rm(folder, { recursive: true, force: true })
     },
   }

@@ -13,7 +13,7 @@ export interface ProcessRecord {
   readonly ports: Readonly<Record<string, number>>
 }
 
-export const PROCESS_NAMES = ['launcher', 'api', 'web', 'mail'] as const
+const PROCESS_NAMES = ['launcher', 'api', 'web', 'mail'] as const
 export type ProcessName = (typeof PROCESS_NAMES)[number]
 
 /** Boot and start time of a living process; null for one that has ended. */
@@ -47,6 +47,11 @@ export class Processes {
     }
   }
 
+  /** The numbers of all that lives now. */
+  living(): number[] {
+    return PROCESS_NAMES.flatMap((name) => this.find(name)?.pid ?? [])
+  }
+
   write(
     name: ProcessName,
     pid: number,
@@ -65,7 +70,7 @@ export class Processes {
     fingerprint: string,
     ports: Readonly<Record<string, number>>,
   ): ProcessRecord {
-    const out = openSync(program.log, 'a')
+    const out = openSync(program.log, 'w')
     try {
       const child = spawn(process.execPath, program.args, {
         cwd: program.cwd,

@@ -2,6 +2,7 @@ import { spawn } from 'node:child_process'
 import { readFileSync } from 'node:fs'
 import { mkdir, rm } from 'node:fs/promises'
 import { join } from 'node:path'
+import { sourceHash, stampBuild } from './build.js'
 import { projectRoot } from './postgres.js'
 import { closingLine, one, tallyPlaywright, tallyVitest, total, type Tally } from './tally.js'
 import { say } from './terminal.js'
@@ -11,6 +12,8 @@ import { say } from './terminal.js'
 const reports = join(projectRoot, '.data/test')
 await rm(reports, { recursive: true, force: true })
 await mkdir(reports, { recursive: true })
+
+const sources = sourceHash(projectRoot)
 
 interface Rung {
   readonly title: string
@@ -34,7 +37,15 @@ function report(name: string): unknown {
 }
 
 const rungs: readonly Rung[] = [
-  check('build', 'build'),
+  {
+    title: 'build',
+    args: ['run', 'build'],
+    count: (exitCode) => {
+      // The journeys run what was built here and need not build it again.
+      if (exitCode === 0) stampBuild(projectRoot, sources)
+      return one(exitCode === 0)
+    },
+  },
   check('types', 'typecheck'),
   check('lint', 'lint'),
   check('format', 'format:check'),

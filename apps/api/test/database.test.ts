@@ -1,5 +1,6 @@
 import { describe, expect, it } from 'vitest'
 import { administer } from '../dev/administer.js'
+import { startCluster } from './cluster.js'
 import { freshDatabase } from './database.js'
 
 const tables = (url: string) =>
@@ -27,5 +28,23 @@ describe("a test's own database", () => {
     await mine.drop()
     await expect(administer(mine.url, 'SELECT 1')).rejects.toThrow(/does not exist/)
     await sleeper
+  })
+})
+
+describe('a PostgreSQL of one test', () => {
+  it('comes back after a restart with what was committed, at the same address', async () => {
+    const cluster = await startCluster()
+    try {
+      await administer(cluster.url(), 'CREATE TABLE planted ()')
+      const sleeper = expect(administer(cluster.url(), 'SELECT pg_sleep(60)')).rejects.toThrow(/terminat/)
+      await expect
+        .poll(() => administer(cluster.url(), "SELECT 1 FROM pg_stat_activity WHERE wait_event = 'PgSleep'"))
+        .toHaveLength(1)
+      await cluster.restart()
+      await sleeper
+      expect(await tables(cluster.url())).toEqual([{ table_name: 'planted' }])
+    } finally {
+      await cluster.stop()
+    }
   })
 })
