@@ -1,0 +1,2 @@
+export { eventsRouter } from './events.router.js'
+export { EventsService } from './events.service.js'

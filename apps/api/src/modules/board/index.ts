@@ -1,0 +1,2 @@
+export { boardRouter } from './board.router.js'
+export { BoardService } from './board.service.js'

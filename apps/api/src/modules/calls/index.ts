@@ -1,0 +1,5 @@
+export { CallCommands, type PinChecker } from './call-commands.js'
+export { CallTransaction } from './call-transaction.js'
+export { callViewSql, iso, person } from './call-view.sql.js'
+export { CallMaker } from './make-call.js'
+export { callsRouter, type CallsRouterDeps } from './calls.router.js'
