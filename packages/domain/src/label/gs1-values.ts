@@ -91,7 +91,8 @@ function checkRule(ai: string, part: ValuePart, text: string, today: string): Re
 
 function tooLong(identifier: Identifier, length: number): Refusal {
   const detail = `The ${nameOf(identifier.ai)} has ${length} characters, at most ${identifier.maxLength} are allowed.`
-  if (identifier.ai === '10') return refuse('lot-too-long', detail)
+  if (identifier.ai === '10')
+    return refuse('lot-too-long', `${detail} Perhaps the scanner leaves out the separators.`)
   return refuse(identifier.ai === '21' ? 'serial-too-long' : 'data-too-long', detail)
 }
 

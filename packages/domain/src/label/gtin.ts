@@ -26,10 +26,8 @@ export function hasGs1CheckDigit(digits: string): boolean {
   )
 }
 
-const GTIN_LENGTHS: readonly number[] = [8, 12, 13, 14]
-
-/** Whether that many digits can be a GTIN: EAN-8, UPC-A, EAN-13 or GTIN-14. */
-export const isGtinLength = (length: number): boolean => GTIN_LENGTHS.includes(length)
+/** Digits of an EAN-8, UPC-A, EAN-13 and GTIN-14. */
+export const GTIN_LENGTHS: readonly number[] = [8, 12, 13, 14]
 
 /**
  * Any GTIN as the fourteen digits under which the house keeps it: shorter ones get zeros in front, which
@@ -38,7 +36,7 @@ export const isGtinLength = (length: number): boolean => GTIN_LENGTHS.includes(l
 export function toGtin14(digits: string): { readonly ok: true; readonly gtin: string } | Refusal {
   if (digits === '') return refuse('empty-value', 'There are no digits in the GTIN.')
   if (!DIGITS.test(digits)) return refuse('bad-character', 'A GTIN has digits only.')
-  if (!isGtinLength(digits.length)) {
+  if (!GTIN_LENGTHS.includes(digits.length)) {
     return digits.length > 14
       ? refuse('data-too-long', `A GTIN has at most 14 digits, this has ${digits.length}.`)
       : refuse('truncated', `A GTIN has 8, 12, 13 or 14 digits, this has ${digits.length}.`)

@@ -3,7 +3,7 @@ import { yearOfToday } from './date.js'
 import { looksLikeLink, readDigitalLink } from './digital-link.js'
 import { GS, labelFromElements, readBracketed, readElementString, type ElementsResult } from './gs1.js'
 import type { Element } from './gs1-values.js'
-import { isGtinLength, toGtin14 } from './gtin.js'
+import { GTIN_LENGTHS, toGtin14 } from './gtin.js'
 import { joinHibc, labelFromHibc, readHibc, type HibcBarcode } from './hibc.js'
 import { refuse, type LabelResult, type Refusal } from './label.js'
 
@@ -17,8 +17,11 @@ type Barcode =
     }
   | ({ readonly ok: true; readonly scheme: 'hibc' } & HibcBarcode)
 
-/** How digits of a GTIN's length are read when a GTIN and an element string are both legal. */
-type Digits = 'ask' | 'gtin' | 'elements'
+/**
+ * How digits of a GTIN's length are read when a GTIN and an element string are both legal. `alone`: there is no
+ * other barcode, so that a serial number is out of the question; `ask`: the other barcode has yet to settle it.
+ */
+type Digits = 'alone' | 'ask' | 'gtin' | 'elements'
 
 /**
  * Reads a package label from whatever a scanner sent, or the text printed under the barcode: GS1 element
@@ -39,7 +42,7 @@ type Digits = 'ask' | 'gtin' | 'elements'
 export function parseScan(scan: string | readonly [string, string], today: string): LabelResult {
   yearOfToday(today)
   if (typeof scan === 'string') {
-    const only = readBarcode(scan, today, 'ask')
+    const only = readBarcode(scan, today, 'alone')
     return only.ok ? labelOf(only, null, today) : only
   }
   const [first, second] = readPair(scan, today)
@@ -81,7 +84,7 @@ const mixed = refuse(
 
 function readBarcode(scan: string, today: string, digits: Digits): Barcode | Refusal {
   // Never trim spaces at the end here: a space may be the check character of HIBC.
-  const text = scan.replace(/^[\s\u0002\ufeff]+/, '').replace(/[\r\n\t\u0003\u0004]+$/, '')
+  const text = trimEnd(trimStart(scan, ' \t\r\n\u0002\ufeff'), '\t\r\n\u0003\u0004')
   if (text.trim() === '') return refuse('empty', 'Nothing was scanned.')
   const { kind, id, data } = splitCarrier(text)
   switch (kind) {
@@ -90,7 +93,7 @@ function readBarcode(scan: string, today: string, digits: Digits): Barcode | Ref
     case 'elements':
       return fromScanner(data, today)
     case 'gtin':
-      return gtinAlone(data)
+      return gtinAlone(data, LENGTHS_BY_CARRIER[id] ?? GTIN_LENGTHS)
     case 'plain':
       return (
         readPlain(data, today) ?? refuse('not-a-label', `What the barcode of kind ${id} holds is no label.`)
@@ -98,6 +101,18 @@ function readBarcode(scan: string, today: string, digits: Digits): Barcode | Ref
     case 'unnamed':
       return readPlain(data, today) ?? readUnnamed(data, today, digits)
   }
+}
+
+function trimStart(text: string, signs: string): string {
+  let from = 0
+  while (from < text.length && signs.includes(text.charAt(from))) from += 1
+  return text.slice(from)
+}
+
+function trimEnd(text: string, signs: string): string {
+  let to = text.length
+  while (to > 0 && signs.includes(text.charAt(to - 1))) to -= 1
+  return text.slice(0, to)
 }
 
 /** What says itself what it is; `null` when the data does not. */
@@ -116,25 +131,38 @@ function readPlain(data: string, today: string): Barcode | Refusal | null {
 }
 
 function readUnnamed(data: string, today: string, digits: Digits): Barcode | Refusal {
-  if (!/^\d+$/.test(data) || !isGtinLength(data.length)) return fromScanner(data, today)
-  const gtin = gtinAlone(data)
+  if (!/^\d+$/.test(data) || !GTIN_LENGTHS.includes(data.length)) return fromScanner(data, today)
+  const gtin = gtinAlone(data, GTIN_LENGTHS)
   const elements = fromScanner(data, today)
-  const both = gtin.ok && elements.ok && saysLotOrDate(elements)
-  if (both && digits === 'ask') {
-    return refuse(
-      'ambiguous',
-      'These digits may be a GTIN or a lot and date: set the scanner to send what it read.',
-    )
-  }
-  if (both) return digits === 'gtin' ? gtin : elements
-  return !gtin.ok && elements.ok && saysLotOrDate(elements) ? elements : gtin
+  if (!elements.ok || !isSecondBarcode(elements)) return gtin
+  if (!gtin.ok || digits === 'elements') return elements
+  if (digits === 'gtin' || (digits === 'alone' && !labelOf(elements, null, today).ok)) return gtin
+  return refuse(
+    'ambiguous',
+    'These digits may be a GTIN or a lot and date: set the scanner to send what it read.',
+  )
 }
 
-/** What the second barcode of a package says when it has no GTIN; anything else is more likely a GTIN. */
-const saysLotOrDate = (read: Barcode): boolean =>
-  read.scheme === 'gs1' && read.elements.every((element) => ['10', '11', '17'].includes(element.ai))
+/** Whether it says what the second barcode of a package does; anything else is more likely a GTIN. */
+const isSecondBarcode = (read: Barcode): boolean =>
+  read.scheme === 'gs1' && read.elements.every((element) => ['10', '11', '17', '21'].includes(element.ai))
 
-function gtinAlone(digits: string): Barcode | Refusal {
+/** How many digits each carrier of a GTIN sends; UPC-A comes with a zero in front or without. */
+const LENGTHS_BY_CARRIER: Readonly<Record<string, readonly number[]>> = {
+  ']E0': [12, 13],
+  ']E4': [8],
+  ']I0': [14],
+  ']I1': [14],
+}
+
+function gtinAlone(digits: string, lengths: readonly number[]): Barcode | Refusal {
+  const longest = Math.max(...lengths)
+  if (digits.length < longest && !lengths.includes(digits.length)) {
+    return refuse('truncated', `The barcode has ${longest} digits, only ${digits.length} were sent.`)
+  }
+  if (digits.length > longest) {
+    return refuse('data-too-long', `The barcode has ${longest} digits, ${digits.length} were sent.`)
+  }
   const read = toGtin14(digits)
   return read.ok ? gs1({ ok: true, elements: [{ ai: '01', value: read.gtin }] }) : read
 }
