@@ -1,6 +1,6 @@
 import { z } from 'zod'
 import { ROLES } from '@bellpull/domain'
-import { id } from './ids.js'
+import { day, id } from './ids.js'
 
 export const role = z.enum(ROLES)
 
@@ -18,8 +18,21 @@ export const sessionView = z
   .meta({ id: 'Session' })
 export type SessionView = z.infer<typeof sessionView>
 
-/** `GET /me`: the person, and where they are today. */
+/** What every screen has to know of the house. */
+export const houseView = z.object({
+  /** IANA time zone; days and times of day are shown in it. */
+  zone: z.string(),
+  today: day,
+  /** The sizing arithmetic is shown; off until the house has settled its intended purpose. */
+  sizingArithmetic: z.boolean(),
+  /** Kinds of second check that count here. */
+  secondCheckMethods: z.array(z.enum(['pin', 'spoken', 'touch'])),
+})
+export type HouseView = z.infer<typeof houseView>
+
+/** `GET /me`: the person, where they are today, and the house. */
 export const meView = signedInUser.extend({
+  house: houseView,
   /** Rooms of today's cases on whose team this person is. */
   rooms: z.array(z.object({ id, number: z.int() })),
 })
