@@ -6,11 +6,14 @@ type Case = { k: number; n: number; conf: Confidence; wilson: [number, number] }
 const { cases } = readVectors<{ cases: Case[] }>('binomial-ci')
 
 describe('wilsonInterval', () => {
-  test.each(cases.map((row) => ({ ...row, source: from(row) })))('$k of $n at $conf: $wilson ($source)', (row) => {
-    const { low, high } = wilsonInterval(row.k, row.n, row.conf)
-    expect(low).toBeCloseTo(row.wilson[0], 9)
-    expect(high).toBeCloseTo(row.wilson[1], 9)
-  })
+  test.each(cases.map((row) => ({ ...row, source: from(row) })))(
+    '$k of $n at $conf: $wilson ($source)',
+    (row) => {
+      const { low, high } = wilsonInterval(row.k, row.n, row.conf)
+      expect(low).toBeCloseTo(row.wilson[0], 9)
+      expect(high).toBeCloseTo(row.wilson[1], 9)
+    },
+  )
 
   test.each([
     [81, 263, 0.2553, 0.3662],

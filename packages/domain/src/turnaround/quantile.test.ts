@@ -7,9 +7,12 @@ type Case = { data_name: string; data: number[]; p: number; type6: number; type7
 const { cases } = readVectors<{ cases: Case[] }>('quantiles')
 
 describe('quantile', () => {
-  test.each(cases.map((row) => ({ ...row, source: from(row) })))('$data_name at $p is $type7 ($source)', (row) => {
-    expect(quantile(row.data, row.p)).toBeCloseTo(row.type7, 8)
-  })
+  test.each(cases.map((row) => ({ ...row, source: from(row) })))(
+    '$data_name at $p is $type7 ($source)',
+    (row) => {
+      expect(quantile(row.data, row.p)).toBeCloseTo(row.type7, 8)
+    },
+  )
 
   test('p 0.9 of ten delivery times is 276 by definition 7, not 564 as by definition 6 (constructed; computed with NumPy)', () => {
     expect(quantile([95, 110, 120, 125, 140, 150, 165, 180, 240, 600], 0.9)).toBeCloseTo(276, 10)
