@@ -44,6 +44,8 @@ export const caseView = z
     ofDay: z.object({ position: z.int(), total: z.int() }),
     startedAt: instant.nullable(),
     timeOutAt: instant.nullable(),
+    /** With `timeOutAt` set and this `null`, a time-out is running: nothing interrupts but a hard stop. */
+    timeOutEndedAt: instant.nullable(),
     patientOutAt: instant.nullable(),
     closedAt: instant.nullable(),
     version: z.int().positive(),

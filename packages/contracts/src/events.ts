@@ -34,6 +34,7 @@ export const EVENT_TYPES = [
   'case.started',
   'case.timeOutStarted',
   'case.timeOutEnded',
+  'case.patientOut',
   'case.signedOut',
   'case.reopened',
   'case.cancelled',

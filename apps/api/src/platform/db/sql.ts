@@ -39,8 +39,12 @@ export function isAway(error: unknown): boolean {
   if (error instanceof DatabaseAway) return true
   const fault = databaseFault(error)
   if (fault) return AWAY.test(fault.code ?? '')
-  return error instanceof Error && ('driverError' in error || hasNetworkCode(error))
+  return error instanceof Error && ('driverError' in error || hasNetworkCode(error) || isUnnamed(error))
 }
+
+/** The driver gives these no code of any kind. */
+const isUnnamed = (error: Error): boolean =>
+  /^(Connection terminated|timeout expired|timeout exceeded when trying to connect)/.test(error.message)
 
 const hasNetworkCode = (error: Error): boolean =>
   'code' in error && /^(ECONN|ENOTFOUND|EAI_|EPIPE|ETIMEDOUT|EHOSTUNREACH)/.test(String(error.code))

@@ -1,0 +1,2 @@
+export { casesRouter } from './cases.router.js'
+export { CasesService } from './cases.service.js'

@@ -1,0 +1,1 @@
+export { sizesRouter } from './sizes.router.js'

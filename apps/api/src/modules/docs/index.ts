@@ -1,0 +1,2 @@
+export { docsRouter } from './docs.router.js'
+export { DOCUMENTED_ROUTES } from './routes.js'

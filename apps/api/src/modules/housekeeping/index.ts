@@ -1,0 +1,1 @@
+export { keepHouse, sweep } from './housekeeping.js'

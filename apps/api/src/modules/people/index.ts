@@ -1,0 +1,2 @@
+export { peopleRouter } from './people.router.js'
+export { Person } from './person.entity.js'

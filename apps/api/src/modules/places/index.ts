@@ -1,0 +1,2 @@
+export { Room } from './room.entity.js'
+export { roomsRouter } from './rooms.router.js'

@@ -1,0 +1,48 @@
+import jwt from 'jsonwebtoken'
+import { z } from 'zod'
+import type { Clock } from '../../platform/clock.js'
+import { Problem } from '../../platform/http/problem.js'
+
+/** How long an access token is good for, in seconds. */
+export const ACCESS_TOKEN_S = 15 * 60
+
+const ISSUER = 'bellpull'
+const payload = z.object({ sub: z.uuid(), sid: z.uuid() })
+
+/** Short-lived tokens that name a person and a session; whether that session still lives is asked each time. */
+export class AccessTokens {
+  constructor(
+    private readonly secret: string,
+    private readonly clock: Clock,
+  ) {}
+
+  issue(personId: string, sessionId: string): string {
+    const iat = this.#nowS()
+    return jwt.sign(
+      { sub: personId, sid: sessionId, iss: ISSUER, iat, exp: iat + ACCESS_TOKEN_S },
+      this.secret,
+      {
+        algorithm: 'HS256',
+      },
+    )
+  }
+
+  /** @throws {Problem} `not-signed-in` */
+  read(token: string): { personId: string; sessionId: string } {
+    try {
+      const read = jwt.verify(token, this.secret, {
+        algorithms: ['HS256'],
+        issuer: ISSUER,
+        clockTimestamp: this.#nowS(),
+      })
+      const { sub, sid } = payload.parse(read)
+      return { personId: sub, sessionId: sid }
+    } catch (cause) {
+      throw new Problem('not-signed-in', { cause })
+    }
+  }
+
+  #nowS(): number {
+    return Math.floor(this.clock.now().getTime() / 1000)
+  }
+}

@@ -1,0 +1,8 @@
+export { AccessTokens } from './access-token.js'
+export { LiveSessions } from './live-sessions.js'
+export { meRouter } from './me.router.js'
+export { hashPassword, hashPin, whyUnfitPassword, PASSWORD_MIN, type PasswordFault } from './password.js'
+export { PinService } from './pin.service.js'
+export { sessionRouter } from './session.router.js'
+export { SessionService } from './session.service.js'
+export { SignInOptionsService, type DemoAccounts } from './sign-in-options.service.js'

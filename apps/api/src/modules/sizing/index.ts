@@ -1,0 +1,1 @@
+export { sizingRouter } from './sizing.router.js'

@@ -1,0 +1,31 @@
+import { pino, type Logger } from 'pino'
+
+export type { Logger } from 'pino'
+
+/**
+ * The log: one JSON line each, with ids and never names. What a body held, a token or a header that carries one
+ * is never written.
+ */
+export const createLog = (level: string): Logger =>
+  pino({
+    level,
+    base: null,
+    timestamp: pino.stdTimeFunctions.isoTime,
+    formatters: { level: (label) => ({ level: label }) },
+    serializers: { err: errorWithoutValues },
+  })
+
+/** Where it went wrong and why, without the rows or parameters that a database error drags along. */
+function errorWithoutValues(error: unknown): Record<string, unknown> {
+  if (!(error instanceof Error)) return { message: String(error) }
+  const { code, constraint, table } = error as { code?: unknown; constraint?: unknown; table?: unknown }
+  return {
+    type: error.name,
+    message: error.message,
+    stack: error.stack,
+    ...(code !== undefined && { code }),
+    ...(constraint !== undefined && { constraint }),
+    ...(table !== undefined && { table }),
+    ...(error.cause !== undefined && { cause: errorWithoutValues(error.cause) }),
+  }
+}
