@@ -119,5 +119,5 @@ function decode(text: string): string | null {
 /** Whether the qualifiers stand in the order of the sequence, each at most once. */
 function inOrder(qualifiers: readonly string[], sequence: readonly string[]): boolean {
   const places = qualifiers.map((ai) => sequence.indexOf(ai))
-  return places.every((place, index) => place >= 0 && place > (places[index - 1] ?? -1))
+  return places.every((place, index) => place > (places[index - 1] ?? -1))
 }
