@@ -1,7 +1,7 @@
 import { spawn } from 'node:child_process'
-import { closeSync, existsSync, linkSync, openSync, readFileSync, rmSync, writeFileSync } from 'node:fs'
+import { closeSync, existsSync, linkSync, readFileSync, rmSync, writeFileSync } from 'node:fs'
 import { join } from 'node:path'
-import { until } from './terminal.js'
+import { openLog, until } from './terminal.js'
 
 /** A process that this folder started, as written down in `.data/run/<name>.json`. */
 export interface ProcessRecord {
@@ -70,7 +70,7 @@ export class Processes {
     fingerprint: string,
     ports: Readonly<Record<string, number>>,
   ): ProcessRecord {
-    const out = openSync(program.log, 'w')
+    const out = openLog(program.log)
     try {
       const child = spawn(process.execPath, program.args, {
         cwd: program.cwd,

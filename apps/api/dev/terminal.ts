@@ -1,5 +1,5 @@
 import { spawn } from 'node:child_process'
-import { closeSync, existsSync, openSync, readFileSync } from 'node:fs'
+import { closeSync, existsSync, openSync, readFileSync, rmSync } from 'node:fs'
 import { InTheWay } from './postgres.js'
 
 /** How often a step that takes long says so where no line can be overwritten, in milliseconds. */
@@ -37,6 +37,12 @@ export function tail(log: string, lines = 40): string {
   return existsSync(log) ? readFileSync(log, 'utf8').trimEnd().split('\n').slice(-lines).join('\n') : ''
 }
 
+/** Opens a log anew. Removed first, because another user (root, say) may have left it. */
+export function openLog(log: string): number {
+  rmSync(log, { force: true })
+  return openSync(log, 'w')
+}
+
 /** One program of a step, with what it says kept in a log. */
 export interface Errand {
   readonly command: string
@@ -53,7 +59,7 @@ export interface Errand {
  * @throws {InTheWay} with the end of its log when it fails.
  */
 export async function runLogged(errand: Errand): Promise<void> {
-  const out = openSync(errand.log, 'w')
+  const out = openLog(errand.log)
   try {
     const child = spawn(errand.command, errand.args, {
       cwd: errand.cwd,
