@@ -28,8 +28,9 @@ export function whyUnfitPassword(password: string, about: readonly string[] = []
   const plain = text.toLowerCase().replace(/[^\p{L}\p{N}]/gu, '')
   if (BLOCKED_PASSWORDS.has(plain) || isRepeated(text) || isRun(text)) return 'too-common'
   const names = about.map((name) => name.toLowerCase().replace(/[^\p{L}\p{N}]/gu, '')).filter(Boolean)
-  // Own names may be part of a longer sentence, but not all of it.
-  if (names.some((name) => [...plain.replaceAll(name, '')].length < PASSWORD_MIN / 2)) return 'holds-own-name'
+  // Own names may be part of a longer sentence, but not nearly all of it.
+  if (names.some((name) => plain.includes(name) && [...plain.replaceAll(name, '')].length < PASSWORD_MIN / 2))
+    return 'holds-own-name'
   return null
 }
 
