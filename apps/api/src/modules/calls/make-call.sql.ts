@@ -56,6 +56,10 @@ WITH asked AS MATERIALIZED (
      AND pg_try_advisory_xact_lock(hashtextextended(concat_ws(' ', $1::uuid, $2::uuid, 'POST', $3::text), 8420))
 ), room_lock AS MATERIALIZED (
   SELECT r.id FROM room r WHERE r.id = (SELECT room_id FROM asked) FOR UPDATE
+), still_open AS MATERIALIZED (
+  -- The case may have been signed out while its room was waited for: the lock looks at its newest version.
+  SELECT k.id FROM room_lock, surgical_case k
+   WHERE k.id = $9::uuid AND k.status IN ('planned', 'inProgress') FOR SHARE OF k
 ), wanted AS MATERIALIZED (
   SELECT w.product, array_agg(w.item_id ORDER BY w.n) AS item_ids, count(*)::int AS count,
          min(w.n) AS first_line
@@ -68,6 +72,7 @@ WITH asked AS MATERIALIZED (
          f.id AS unit_id, f.lot, f.serial, f.use_by_on, l.id AS location_id, l.code, l.zone, l.walk_order,
          ci.category, ci.ref, ci.gtin, ci.label, ci.variant, ci.side, ci.kind, ci.part_name, ci.size, s.name AS system
     FROM room_lock
+   CROSS JOIN still_open
    CROSS JOIN wanted w
     JOIN catalogue_item ci ON ci.id = w.product AND ci.active AND ci.stocked AND ci.side IN ('either', $14::text)
     LEFT JOIN implant_system s ON s.id = ci.system_id

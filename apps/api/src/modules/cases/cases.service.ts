@@ -84,10 +84,14 @@ export class CasesService {
   }
 
   /**
-   * The case, then its room: under the room's lock nothing of the case's calls changes, so that what is settled
-   * now is settled when the case closes.
+   * The room, then its case: the order in which calls lock them. Under the room's lock nothing of the case's
+   * calls changes, so that what is settled now is settled when the case closes.
    */
   async #lock(sql: Sql, caseId: string): Promise<CaseRow> {
+    await sql.query({
+      text: 'SELECT id FROM room WHERE id = (SELECT room_id FROM surgical_case WHERE id = $1) FOR UPDATE',
+      values: [caseId],
+    })
     const { rows } = await sql.query<CaseRow>({
       text: `SELECT room_id AS "roomId", version, status, started_at AS "startedAt", time_out_at AS "timeOutAt",
                     time_out_ended_at AS "timeOutEndedAt", patient_out_at AS "patientOutAt", closed_at AS "closedAt",
@@ -97,7 +101,6 @@ export class CasesService {
     })
     const found = rows[0]
     if (!found) throw new Problem('not-found')
-    await sql.query({ text: 'SELECT id FROM room WHERE id = $1 FOR UPDATE', values: [found.roomId] })
     return found
   }
 }
