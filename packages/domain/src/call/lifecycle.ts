@@ -111,7 +111,8 @@ const ITEM_RULES: Readonly<Record<ItemCommandName, Rule>> = {
   },
   decide: { from: ['called', 'accepted'], to: { same: true }, by: ['charge'], built: false },
   undo: {
-    from: ANY_STAGE,
+    // No step that can be taken back ends at *called*, and opening a package cannot be taken back.
+    from: WITH_SOMEBODY,
     to: { before: true },
     by: ['surgeon', 'scrub', 'circulator', 'runner', 'core', 'charge'],
     built: true,
@@ -175,6 +176,7 @@ function stands(item: ItemState, command: ItemCommandName, rule: Rule): boolean 
   if (item.outcome !== null) return AFTER_OUTCOME[command]?.includes(item.outcome) ?? false
 
   const category = CATEGORY_RULES[item.category]
+  if (!category.stages.includes(item.stage)) return false
   // What is not opened (free text) is delivered straight from accepted and settled in the room.
   if (!category.stages.includes('pulled')) {
     if (command === 'deliver') return item.stage === 'called' || item.stage === 'accepted'

@@ -23,6 +23,8 @@ export interface Timing {
   readonly kind: CallKind
   /** Instants in milliseconds since the epoch. */
   readonly calledAtMs: number
+  /** When an early or stand-by call became confirmed; left out or `null` for a call that was made confirmed. */
+  readonly confirmedAtMs?: number | null
   /** `null` for stand by: needed when asked for. */
   readonly neededAtMs: number | null
 }
@@ -30,24 +32,27 @@ export interface Timing {
 /** Start values, common practice, no source: a house may set its own. */
 export const ESCALATE_AFTER_MS = [60_000, 120_000, 240_000] as const
 
-/** A call counts as *now* when it is confirmed and was wanted within this long of being called. */
+/** A call counts as *now* when it is confirmed and wanted in less than this: *in 1 minute* is not *now*. */
 export const NOW_WITHIN_MS = 60_000
 
+/** When the call was last spoken: confirmed, or else made. */
+const spokenAtMs = (call: Timing): number => call.confirmedAtMs ?? call.calledAtMs
+
 export const isNowCall = (call: Timing): boolean =>
-  call.kind === 'confirmed' && call.neededAtMs !== null && call.neededAtMs - call.calledAtMs <= NOW_WITHIN_MS
+  call.kind === 'confirmed' && call.neededAtMs !== null && call.neededAtMs - spokenAtMs(call) < NOW_WITHIN_MS
 
 /**
  * How often a call that nobody has accepted has come forward: 0 not yet, 1 repeated quietly,
- * 2 the charge nurse has it, 3 again. *Now* calls count from the moment they were made; others from
- * the time needed less the expected arrival; stand by never comes forward.
+ * 2 the charge nurse has it, 3 again. *Now* calls count from the moment they were made or confirmed; others
+ * from the time needed less the expected arrival, never from before they were spoken; stand by never comes
+ * forward.
  *
  * @param expectedArrivalMs how long the way usually takes, in milliseconds.
  */
 export function escalationLevel(call: Timing, nowMs: number, expectedArrivalMs: number): 0 | 1 | 2 | 3 {
   if (call.neededAtMs === null || call.kind === 'standby') return 0
-  const from = isNowCall(call)
-    ? call.calledAtMs
-    : Math.max(call.calledAtMs, call.neededAtMs - expectedArrivalMs)
+  const spoken = spokenAtMs(call)
+  const from = isNowCall(call) ? spoken : Math.max(spoken, call.neededAtMs - expectedArrivalMs)
   const waited = nowMs - from
   const level = ESCALATE_AFTER_MS.filter((limit) => waited >= limit).length
   return level as 0 | 1 | 2 | 3

@@ -56,8 +56,7 @@ export type UnusableReason = (typeof UNUSABLE_REASONS)[number]
  *   AI 17 is the last day of use; day 00 is the last day of the month, resolved when the label is read).
  */
 export function whyUnusable(unit: UnitFacts, caseSide: CaseSide, today: string): UnusableReason | null {
-  if ((GONE_STATES as readonly UnitState[]).includes(unit.state) && unit.state !== 'opened')
-    return 'unit-not-in-stock'
+  if ((GONE_STATES as readonly UnitState[]).includes(unit.state)) return 'unit-not-in-stock'
   if (unit.state === 'recalled') return 'unit-recalled'
   if (unit.state === 'quarantined') return 'unit-quarantined'
   if (unit.state === 'expired' || unit.useByOn < today) return 'unit-expired'
