@@ -1,15 +1,6 @@
 import { z } from 'zod'
-import {
-  CALL_COMMANDS,
-  CALL_KINDS,
-  CATEGORIES,
-  FREE_TEXT_MAX,
-  HOLDS,
-  ITEM_COMMANDS,
-  OUTCOMES,
-  SIDES,
-  STAGES,
-} from '@bellpull/domain'
+import type { CALL_COMMANDS, ITEM_COMMANDS } from '@bellpull/domain'
+import { CALL_KINDS, CATEGORIES, FREE_TEXT_MAX, HOLDS, OUTCOMES, SIDES, STAGES } from '@bellpull/domain'
 import { caseSide, partKind, roomRef } from './cases.js'
 import { day, gtin, id, instant } from './ids.js'
 import { scan, typedLabel } from './labels.js'
@@ -113,9 +104,19 @@ export type CallView = z.infer<typeof callView>
 
 const neededInMinutes = z.int().min(0).max(600)
 
+/** Characters as people and PostgreSQL count them, not the halves in which JavaScript keeps some of them. */
+const freeText = z
+  .string()
+  .trim()
+  .min(1)
+  .refine((text) => [...text].length <= FREE_TEXT_MAX, {
+    error: `must be at most ${FREE_TEXT_MAX} characters long`,
+  })
+  .meta({ maxLength: FREE_TEXT_MAX })
+
 export const makeCallLine = z.union([
   z.strictObject({ catalogueItemId: id, quantity: z.int().min(1).max(9) }),
-  z.strictObject({ text: z.string().trim().min(1).max(FREE_TEXT_MAX) }),
+  z.strictObject({ text: freeText }),
 ])
 
 /** `POST /cases/:id/calls` */
@@ -187,7 +188,10 @@ export const CALL_COMMAND_BODIES = {
           .refine(oneLabel, { path: ['scan'], error: LABEL_WANTED }),
       )
       .min(1)
-      .max(20),
+      .max(20)
+      .refine((items) => new Set(items.map(({ itemId }) => itemId)).size === items.length, {
+        error: 'names an item twice',
+      }),
     ...checks,
   }),
 } as const satisfies Record<(typeof CALL_COMMANDS)[number], z.ZodType>
@@ -207,7 +211,7 @@ export const ITEM_COMMAND_BODIES = {
   deliver: plain('deliver'),
   verify: z
     .strictObject({ name: z.literal('verify'), expectedVersion, ...labelInput, ...checks })
-    .refine(atMostOneLabel, { path: ['scan'], error: LABEL_WANTED }),
+    .refine(oneLabel, { path: ['scan'], error: LABEL_WANTED }),
   open: z
     .strictObject({ name: z.literal('open'), expectedVersion, ...labelInput })
     .refine(atMostOneLabel, { path: ['scan'], error: LABEL_WANTED }),

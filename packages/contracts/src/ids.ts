@@ -1,7 +1,7 @@
 import { z } from 'zod'
 
-/** Ids are opaque to clients; all are UUIDs. */
-export const id = z.uuid()
+/** Ids are opaque to clients; all are UUIDs. Taken in either case and compared in small letters, as PostgreSQL writes them. */
+export const id = z.uuid().toLowerCase()
 
 /** A day in the house's time zone, `YYYY-MM-DD`. */
 export const day = z.iso.date()

@@ -59,7 +59,7 @@ export const problemType = (code: ProblemCode): string => `urn:bellpull:problem:
 /** The code of a problem's `type`, or `null` when this client does not know it. */
 export function problemCode(type: string): ProblemCode | null {
   const code = type.replace(/^urn:bellpull:problem:/, '')
-  return code in PROBLEMS ? (code as ProblemCode) : null
+  return Object.hasOwn(PROBLEMS, code) ? (code as ProblemCode) : null
 }
 
 /** RFC 9457 problem details. Members beyond these depend on the code (`expected`, `scanned`, `reason`, ...). */
