@@ -1,4 +1,4 @@
-import { mkdirSync } from 'node:fs'
+import { mkdirSync, rmSync } from 'node:fs'
 import { join } from 'node:path'
 import { administer } from '../apps/api/dev/administer.js'
 import { build } from '../apps/api/dev/build.js'
@@ -13,6 +13,7 @@ const TEMPLATE = 'demo'
 export default async function setup(): Promise<() => Promise<void>> {
   const logs = join(projectRoot, '.data/log')
   mkdirSync(logs, { recursive: true })
+  rmSync(join(logs, 'journeys-houses.log'), { force: true })
   await build(projectRoot, join(logs, 'build.log'))
   const cluster = await startCluster()
   try {

@@ -1,5 +1,5 @@
 import { spawn, type ChildProcess } from 'node:child_process'
-import { mkdirSync } from 'node:fs'
+import { closeSync, mkdirSync, openSync } from 'node:fs'
 import { join } from 'node:path'
 import { freePort, projectRoot } from '../apps/api/dev/postgres.js'
 import { answers, runLogged, until } from '../apps/api/dev/terminal.js'
@@ -104,9 +104,11 @@ export async function openHouse(): Promise<House> {
   }
 }
 
-/** Starts one program; what it says on its error stream is shown, since a house in a test has nothing to complain of. */
+/** Starts one program of a house. What it says is added to one log for all journeys. */
 function program(args: readonly string[], cwd: string, env: NodeJS.ProcessEnv): ChildProcess {
-  const child = spawn(process.execPath, args, { cwd, env, stdio: ['ignore', 'ignore', 'inherit'] })
+  const log = openSync(join(LOGS, 'journeys-houses.log'), 'a')
+  const child = spawn(process.execPath, args, { cwd, env, stdio: ['ignore', log, log] })
+  closeSync(log)
   const kill = () => child.kill('SIGKILL')
   process.once('exit', kill)
   child.once('exit', () => process.removeListener('exit', kill))
@@ -121,8 +123,7 @@ async function answering(child: ChildProcess, address: string): Promise<void> {
     ready = await answers(address)
     return ready || !living(child)
   })
-  if (!ready)
-    throw new Error(`${address} does not answer: the program ${living(child) ? 'still runs' : 'has ended'}`)
+  if (!ready) throw new Error(`${address} does not answer; see journeys-houses.log in ${LOGS}`)
 }
 
 async function end(child: ChildProcess, signal: NodeJS.Signals): Promise<void> {

@@ -33,7 +33,7 @@ describe('import directions', () => {
     ['the client imports a store', 'apps/web/src/api/planted.ts', '@/stores/board'],
   ]
   it.each(refused)('refuses when %s', async (_title, file, specifier) => {
-    expect(await complaints(file, uses(specifier))).toEqual(['bellpull/import-direction'])
+    expect(await complaints(file, uses(specifier))).toContain('bellpull/import-direction')
   })
 
   const allowed: [title: string, file: string, specifier: string][] = [
