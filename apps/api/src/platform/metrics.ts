@@ -56,9 +56,16 @@ export class Metrics {
   }
 }
 
-const routeOf = (req: Request): string => {
-  const route = req.route as { path?: unknown } | undefined
-  return route ? req.baseUrl + String(route.path) : 'none'
+/** The route that took the request, with names in place of ids; `none` where there was none. */
+function routeOf(req: Request): string {
+  const path: unknown = (req.route as { path?: unknown } | undefined)?.path
+  if (typeof path !== 'string') return 'none'
+  if (path.includes('*')) return path
+  // Once an answer is a refusal, Express has forgotten under which prefix the route was mounted.
+  const segments = (text: string): string[] => text.split('/').filter(Boolean)
+  const whole = segments(req.originalUrl.replace(/\?.*$/s, ''))
+  const prefix = whole.slice(0, Math.max(0, whole.length - segments(path).length))
+  return ['', ...prefix, ...segments(path)].join('/')
 }
 
 /** Loopback, and not merely passed on by a proxy that runs here too. */
