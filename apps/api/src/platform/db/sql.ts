@@ -68,8 +68,8 @@ export class Database implements Sql {
   }
 
   /** @throws {pg.DatabaseError} as PostgreSQL said it. @throws {DatabaseAway} */
-  query<R>(q: Query): Promise<{ rows: R[]; rowCount: number }> {
-    return ask<R>(this.#pool(), q)
+  async query<R>(q: Query): Promise<{ rows: R[]; rowCount: number }> {
+    return await ask<R>(this.#pool(), q)
   }
 
   /**
