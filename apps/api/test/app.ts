@@ -6,7 +6,7 @@ import request from 'supertest'
 import type { DataSource } from 'typeorm'
 import { createApp } from '../src/app.js'
 import { compose, type House } from '../src/compose.js'
-import { createDataSource } from '../src/data-source.js'
+import { createDataSource, migrate } from '../src/data-source.js'
 import { hashPassword, hashPin } from '../src/modules/session/index.js'
 import { loadConfig, type Config } from '../src/platform/config.js'
 import { createLog, type Logger } from '../src/platform/log.js'
@@ -62,6 +62,8 @@ let secrets: Promise<[string, string]> | undefined
 export interface TestApiOptions {
   /** The same database for two APIs; made, and dropped again, when left out. */
   readonly database?: FreshDatabase
+  /** The database given has no tables yet. */
+  readonly migrate?: boolean
   readonly clock?: SettableClock
   /** With real sockets in place of the recording publisher. */
   readonly sockets?: boolean
@@ -112,6 +114,7 @@ export async function startTestApi(options: TestApiOptions = {}): Promise<TestAp
   const sockets = options.sockets ? new SocketServer({ log, sessionCheckMs: 200, queueCheckMs: 50 }) : null
   const dataSource = createDataSource({ url: databaseUrl, poolSize: config.poolSize })
   await dataSource.initialize()
+  if (options.migrate) await migrate(dataSource)
   const house = compose({
     config,
     clock,

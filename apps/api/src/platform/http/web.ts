@@ -23,7 +23,7 @@ export function webRouter(folder: string): Router {
       return
     }
     askEachTime(res)
-    res.sendFile(join(root, 'index.html'), (error) => {
+    res.sendFile('index.html', { root }, (error) => {
       if (error) next(new Problem('not-found', { cause: error }))
     })
   })
