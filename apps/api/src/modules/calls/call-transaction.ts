@@ -1,6 +1,7 @@
 import { CallWork, RoomsMoved, type Change } from './call-work.js'
 import type { Clock } from '../../platform/clock.js'
 import type { Database } from '../../platform/db/sql.js'
+import { Problem } from '../../platform/http/problem.js'
 import { storeAnswer, storedAnswer, type KeyUse, type StoredAnswer } from '../../platform/http/idempotency.js'
 import type { Actor } from '../../platform/http/session.js'
 import type { Publisher } from '../../platform/realtime/publisher.js'
@@ -31,7 +32,9 @@ export class CallTransaction {
       try {
         return await this.#once(tap, status, concerned, work)
       } catch (error) {
-        if (!(error instanceof RoomsMoved) || attempt === TRIES) throw error
+        if (!(error instanceof RoomsMoved)) throw error
+        if (attempt === TRIES)
+          throw new Problem('unavailable', { detail: 'Too much happens at once.', cause: error })
         concerned.push(...error.rooms)
       }
     }

@@ -9,7 +9,7 @@ import {
   type UnitRow,
 } from './rows.js'
 import type { EventType } from '@bellpull/contracts'
-import type { UndoableCommand, UnitState } from '@bellpull/domain'
+import { GONE_STATES, type UndoableCommand, type UnitState } from '@bellpull/domain'
 import type { Sql } from '../../platform/db/sql.js'
 import { Problem } from '../../platform/http/problem.js'
 import type { Actor } from '../../platform/http/session.js'
@@ -29,6 +29,11 @@ export interface Change {
   readonly event: string
   readonly body: string
 }
+
+const GONE: readonly UnitState[] = GONE_STATES
+
+/** Recalled or quarantined: nobody may hold, pull, verify or open it. */
+export const isStopped = (unit: UnitRow): boolean => unit.state === 'recalled' || unit.state === 'quarantined'
 
 interface PendingEvent {
   readonly type: EventType
@@ -120,7 +125,11 @@ export class CallWork {
     this.#callPatches.set(call.id, { ...this.#callPatches.get(call.id), ...patch })
   }
 
-  /** Moves a package or changes what it is, and keeps where it went when its place changed. */
+  /**
+   * Moves a package or changes what it is, and keeps where it went when its place changed. A package that has
+   * been recalled or quarantined stays that, whatever is done with it, until it is opened or let free by those
+   * who may: a hold that ends must not make it usable again.
+   */
   async updateUnit(
     unit: UnitRow,
     to: { state: UnitState; heldFor: string | null; locationId?: string },
@@ -128,17 +137,18 @@ export class CallWork {
     itemId: string | null,
   ): Promise<void> {
     const locationId = to.locationId ?? unit.locationId
+    const state = isStopped(unit) && !GONE.includes(to.state) ? unit.state : to.state
     await this.sql.query({
       name: 'update-unit',
       text: 'UPDATE unit SET state = $2, held_for = $3, location_id = $4 WHERE id = $1',
-      values: [unit.id, to.state, to.heldFor, locationId],
+      values: [unit.id, state, to.heldFor, locationId],
     })
     if (locationId !== unit.locationId) {
       await this.sql.query({
         name: 'insert-movement',
         text: `INSERT INTO movement (unit_id, item_id, at, actor_id, why, from_location_id, to_location_id, to_state)
                VALUES ($1, $2, $3, $4, $5, $6, $7, $8)`,
-        values: [unit.id, itemId, this.now, this.actor.id, why, unit.locationId, locationId, to.state],
+        values: [unit.id, itemId, this.now, this.actor.id, why, unit.locationId, locationId, state],
       })
     }
     this.#stock.add(unit.catalogueItemId)

@@ -1,5 +1,5 @@
 import { EXPIRES_SOON_DAYS, type CallKind, type CaseSide } from '@bellpull/domain'
-import type { CallWork } from './call-work.js'
+import { RoomsMoved, isStopped, type CallWork } from './call-work.js'
 import { lockUnit, type CallRow, type UnitRow } from './rows.js'
 import type { Sql } from '../../platform/db/sql.js'
 
@@ -53,21 +53,26 @@ interface EarlyHold {
   readonly roomId: string
 }
 
-/** Early calls whose package of these products is still on the shelf; a confirmed call goes before them. */
+/**
+ * Early calls whose package of these products is still on the shelf, within reach of this room; a confirmed call
+ * goes before them.
+ */
 async function findEarlyHolds(
   sql: Sql,
   catalogueItemIds: readonly string[],
+  roomId: string,
   today: string,
 ): Promise<EarlyHold[]> {
   const { rows } = await sql.query<EarlyHold>({
     name: 'find-early-holds',
     text: `SELECT u.id AS "unitId", i.id AS "itemId", c.id AS "callId", c.room_id AS "roomId"
              FROM unit u JOIN item i ON i.id = u.held_for JOIN call c ON c.id = i.call_id
-            WHERE u.catalogue_item_id = ANY($1::uuid[]) AND u.state = 'held' AND u.place_room_id IS NULL
+            WHERE u.catalogue_item_id = ANY($1::uuid[]) AND u.state = 'held'
+              AND (u.place_room_id IS NULL OR u.place_room_id = $3)
               AND u.use_by_on >= $2::date AND u.sterile
               AND i.outcome IS NULL AND i.stage IN ('called', 'accepted') AND c.kind = 'early'
             ORDER BY c.needed_at DESC, u.use_by_on, u.id`,
-    values: [catalogueItemIds, today],
+    values: [catalogueItemIds, today, roomId],
   })
   return rows
 }
@@ -76,19 +81,24 @@ async function findEarlyHolds(
 export async function roomsWithEarlyHolds(
   sql: Sql,
   catalogueItemIds: readonly string[],
+  roomId: string,
   today: string,
 ): Promise<string[]> {
-  return (await findEarlyHolds(sql, catalogueItemIds, today)).map((hold) => hold.roomId)
+  return (await findEarlyHolds(sql, catalogueItemIds, roomId, today)).map((hold) => hold.roomId)
 }
 
 /**
  * Takes the package of the early call that needs it last, for a confirmed one, and lets the early item try
- * again. Both rooms must be locked; holds of rooms that are not are passed over. Both are told.
+ * again. Both are told.
+ *
+ * @throws {RoomsMoved} when the other room is not locked yet: the work begins again with its lock.
  */
 export async function takeEarlyHold(work: CallWork, wish: Wish, call: CallRow): Promise<UnitRow | null> {
-  const holds = await findEarlyHolds(work.sql, [wish.catalogueItemId], work.today)
-  const taken = holds.find((hold) => hold.callId !== call.id && work.holdsRoom(hold.roomId))
+  const all = await findEarlyHolds(work.sql, [wish.catalogueItemId], call.roomId, work.today)
+  const holds = all.filter((hold) => hold.callId !== call.id)
+  const taken = holds[0]
   if (!taken) return null
+  if (!work.holdsRoom(taken.roomId)) throw new RoomsMoved(holds.map((hold) => hold.roomId))
 
   const early = await work.load(taken.callId)
   const item = early.items.find(({ id }) => id === taken.itemId)
@@ -151,7 +161,7 @@ export async function holdFor(work: CallWork, wish: Wish, call: CallRow): Promis
 /** Gives a package on the shelf back to everybody, and says so to the rooms that have none free. */
 export async function letGo(work: CallWork, unit: UnitRow, why: string, itemId: string): Promise<void> {
   await work.updateUnit(unit, { state: 'available', heldFor: null }, why, itemId)
-  await tellWaitingRooms(work, unit.catalogueItemId)
+  if (!isStopped(unit)) await tellWaitingRooms(work, unit.catalogueItemId)
 }
 
 /** Rooms whose item has none free are told that stock came back; nothing is held by itself. */

@@ -1,5 +1,5 @@
 import { randomUUID } from 'node:crypto'
-import type { MakeCall } from '@bellpull/contracts'
+import type { CaseStatus, MakeCall } from '@bellpull/contracts'
 import { CATEGORY_RULES, NOW_WITHIN_MS, type CaseSide, type Category, type Side } from '@bellpull/domain'
 import type { CallTransaction, Tap } from './call-transaction.js'
 import type { CallWork } from './call-work.js'
@@ -24,7 +24,7 @@ interface OpenCase {
   readonly id: string
   readonly roomId: string
   readonly side: CaseSide
-  readonly status: string
+  readonly status: CaseStatus
 }
 
 interface Product {
@@ -41,14 +41,6 @@ export class CallMaker {
   constructor(private readonly transaction: CallTransaction) {}
 
   async make(tap: Tap, caseId: string, body: MakeCall): Promise<StoredAnswer> {
-    body.items.forEach((line, index) => {
-      const refused = 'text' in line ? refusedText(line.text) : null
-      if (refused)
-        throw new Problem('not-called-here', {
-          detail: refused,
-          errors: [{ pointer: `/items/${index}/text`, message: refused }],
-        })
-    })
     const wanted = body.items.flatMap((line): Wanted[] =>
       'text' in line
         ? [{ id: randomUUID(), catalogueItemId: null, text: line.text }]
@@ -110,6 +102,7 @@ export class CallMaker {
 
   #carefully(tap: Tap, caseId: string, body: MakeCall, wanted: readonly Wanted[]): Promise<StoredAnswer> {
     return this.transaction.run(tap, 201, async (work) => {
+      demandCalledHere(body)
       const openCase = await getCase(work, caseId)
       await demandCaller(work, caseId, body.calledBy)
       const products = await getProducts(work, wanted)
@@ -118,7 +111,9 @@ export class CallMaker {
       if (openCase.status !== 'planned' && openCase.status !== 'inProgress') throw new Problem('case-closed')
 
       const mayTake =
-        body.kind === 'confirmed' ? await roomsWithEarlyHolds(work.sql, [...products.keys()], work.today) : []
+        body.kind === 'confirmed'
+          ? await roomsWithEarlyHolds(work.sql, [...products.keys()], openCase.roomId, work.today)
+          : []
       await work.lockRooms([openCase.roomId, ...mayTake])
       // The case may have been signed out while its room was locked by somebody else.
       const now = await getCase(work, caseId)
@@ -127,8 +122,8 @@ export class CallMaker {
       const call = await insertCall(work, openCase, body)
       await insertItems(work, call, wanted, products)
       await holdAll(work, call, body, wanted, products)
-      const { rows } = await work.sql.query<{ itemId: string; hold: string }>({
-        text: 'SELECT id AS "itemId", hold FROM item WHERE call_id = $1 ORDER BY line_no',
+      const { rows } = await work.sql.query<{ itemId: string; hold: string; unitId: string | null }>({
+        text: 'SELECT id AS "itemId", hold, unit_id AS "unitId" FROM item WHERE call_id = $1 ORDER BY line_no',
         values: [call.id],
       })
       work.event(call, null, 'call.called', {
@@ -140,6 +135,18 @@ export class CallMaker {
       return call.id
     })
   }
+}
+
+/** Blood, medicines, specimens and tissue have their own ways. @throws {Problem} `not-called-here` */
+function demandCalledHere(body: MakeCall): void {
+  body.items.forEach((line, index) => {
+    const refused = 'text' in line ? refusedText(line.text) : null
+    if (refused)
+      throw new Problem('not-called-here', {
+        detail: refused,
+        errors: [{ pointer: `/items/${index}/text`, message: refused }],
+      })
+  })
 }
 
 const isWantedNow = (body: MakeCall): boolean =>
@@ -218,6 +225,7 @@ async function insertCall(work: CallWork, openCase: OpenCase, body: MakeCall): P
     caseId: openCase.id,
     roomId: openCase.roomId,
     caseSide: openCase.side,
+    caseStatus: openCase.status,
     kind: body.kind,
     neededAt: neededAt(body, work.now),
     calledAt: work.now,

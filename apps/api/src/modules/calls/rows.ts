@@ -1,3 +1,4 @@
+import type { CaseStatus } from '@bellpull/contracts'
 import type {
   CallKind,
   CaseSide,
@@ -18,6 +19,7 @@ export interface CallRow {
   readonly caseId: string
   readonly roomId: string
   readonly caseSide: CaseSide
+  readonly caseStatus: CaseStatus
   readonly kind: CallKind
   readonly neededAt: Date | null
   readonly calledAt: Date
@@ -156,7 +158,7 @@ export async function findCallOf(
 export async function getCalls(sql: Sql, ids: readonly string[]): Promise<CallRow[]> {
   const { rows } = await sql.query<CallRow>({
     name: 'get-calls',
-    text: `SELECT c.id, c.case_id AS "caseId", c.room_id AS "roomId", k.side AS "caseSide", c.kind,
+    text: `SELECT c.id, c.case_id AS "caseId", c.room_id AS "roomId", k.side AS "caseSide", k.status AS "caseStatus", c.kind,
                   c.needed_at AS "neededAt", c.called_at AS "calledAt", c.called_by AS "calledBy",
                   c.read_back_by AS "readBackBy", c.version
              FROM call c JOIN surgical_case k ON k.id = c.case_id
@@ -193,17 +195,22 @@ export async function lockUnit(sql: Sql, unitId: string): Promise<UnitRow> {
   return unit
 }
 
+/** What `sameAsTyped` of the domain says, where $4: nobody can be sure of case and spaces on a printed label. */
+const same = (column: string, said: string): string =>
+  `(${column} = ${said} OR $4::boolean AND upper(replace(${column}, ' ', '')) = upper(replace(${said}, ' ', '')))`
+
 /** Packages that bear this label, not locked: lot as printed, serial where the label has one. */
 export async function findUnitsByLabel(
   sql: Sql,
-  label: { catalogueItemId: string; lot: string | undefined; serial: string | undefined },
+  label: { catalogueItemId: string; lot: string | undefined; serial: string | undefined; typed: boolean },
 ): Promise<UnitRow[]> {
   const { rows } = await sql.query<UnitRow>({
     name: 'find-units-by-label',
     text: `${SELECT_UNIT}
-            WHERE u.catalogue_item_id = $1 AND ($2::text IS NULL OR u.lot = $2) AND ($3::text IS NULL OR u.serial = $3)
+            WHERE u.catalogue_item_id = $1 AND ($2::text IS NULL OR ${same('u.lot', '$2::text')})
+              AND ($3::text IS NULL OR ${same('u.serial', '$3::text')})
             ORDER BY u.use_by_on, u.id`,
-    values: [label.catalogueItemId, label.lot ?? null, label.serial ?? null],
+    values: [label.catalogueItemId, label.lot ?? null, label.serial ?? null, label.typed],
   })
   return rows
 }

@@ -43,8 +43,7 @@ export const putBackTask = (work: CallWork, unit: UnitRow, inspect: boolean) => 
   putBackDoneAt: null,
 })
 
-/** From here on the package is nobody's, and on its way. What has been recalled or quarantined stays that. */
+/** From here on the package is nobody's, and on its way. */
 export async function startPutBack(work: CallWork, unit: UnitRow, itemId: string): Promise<void> {
-  const state = unit.state === 'recalled' || unit.state === 'quarantined' ? unit.state : 'putBack'
-  await work.updateUnit(unit, { state, heldFor: null }, 'put back', itemId)
+  await work.updateUnit(unit, { state: 'putBack', heldFor: null }, 'put back', itemId)
 }

@@ -1,5 +1,5 @@
 import type { Scan, TypedLabel } from '@bellpull/contracts'
-import { parseScan, whyUnusable, type CaseSide } from '@bellpull/domain'
+import { normaliseTyped, parseScan, sameAsTyped, whyUnusable, type CaseSide } from '@bellpull/domain'
 import { Problem } from '../../../platform/http/problem.js'
 import type { Sql } from '../../../platform/db/sql.js'
 import { findProduct, type ItemRow, type ProductRow, type UnitRow } from '../rows.js'
@@ -24,7 +24,10 @@ export const hasLabel = (input: LabelInput): boolean => input.scan !== undefined
 /** @throws {Problem} `invalid-input` when nothing was scanned or typed, `label-unreadable` with its reason. */
 export function readLabel(input: LabelInput, today: string): ReadLabel {
   if (input.typed) {
-    const { ref, lot, serial, useByOn } = input.typed
+    const typed = normaliseTyped(input.typed, today)
+    if (!typed.ok)
+      throw new Problem('label-unreadable', { detail: typed.detail, extra: { reason: typed.reason } })
+    const { ref, lot, serial, useByOn } = typed.label
     return { product: { ref }, lot, serial, useByOn, typed: true }
   }
   if (input.scan === undefined)
@@ -45,6 +48,29 @@ export function readLabel(input: LabelInput, today: string): ReadLabel {
   return { product: named, lot, serial, useByOn, typed: false }
 }
 
+/**
+ * Which package a label is on is said by its lot or its serial number; a product number alone fits every
+ * package of the product, and a check that compared nothing must not count as one.
+ *
+ * @throws {Problem} `label-unreadable`
+ */
+export function demandIdentified(label: ReadLabel): void {
+  if (label.lot === undefined && label.serial === undefined)
+    throw new Problem('label-unreadable', {
+      detail: 'This barcode bears no lot and no serial number: scan the other one of the label too.',
+      extra: { reason: 'no-lot' },
+    })
+}
+
+/** @throws {Problem} `label-unreadable` when there is no date to compare. */
+export function demandDated(label: ReadLabel): void {
+  if (label.useByOn === undefined)
+    throw new Problem('label-unreadable', {
+      detail: 'This barcode bears no use-by date: scan the other one of the label too, or type the label.',
+      extra: { reason: 'no-use-by' },
+    })
+}
+
 const said = (product: ProductRow): Record<string, unknown> => ({
   ref: product.ref,
   label: product.label,
@@ -55,7 +81,7 @@ const said = (product: ProductRow): Record<string, unknown> => ({
 /**
  * Is the label's product the one that was called?
  * @throws {Problem} `wrong-side` when the label is for the other side, `wrong-item` for any other difference,
- *   both with `expected` and `scanned`; `unit-not-in-stock` for a product that the house does not know.
+ *   a product that the house does not know among them; both with `expected` and `scanned`.
  */
 export async function demandCalledProduct(
   sql: Sql,
@@ -68,8 +94,8 @@ export async function demandCalledProduct(
   if (!expected)
     throw new Problem('item-moved-on', { detail: 'This was called in words: there is no label to compare.' })
   if (!scanned)
-    throw new Problem('unit-not-in-stock', {
-      detail: 'The house does not know this product.',
+    throw new Problem('wrong-item', {
+      detail: `Called: ${inWords(expected)}. The house does not know the product on the label.`,
       extra: { expected: said(expected), scanned: { ...label.product } },
     })
   if (scanned.id === expected.id) return
@@ -87,9 +113,14 @@ const inWords = (product: ProductRow): string =>
     .join(' ')
 
 /** Whether a label can be that of this package: lot as printed, serial where the label bears one. */
-export const isOf = (label: ReadLabel, unit: UnitRow): boolean =>
-  (label.lot === undefined || label.lot === unit.lot) &&
-  (label.serial === undefined || unit.serial === null || label.serial === unit.serial)
+export function isOf(label: ReadLabel, unit: UnitRow): boolean {
+  const same = (said: string, recorded: string) =>
+    label.typed ? sameAsTyped(said, recorded) : said === recorded
+  return (
+    (label.lot === undefined || same(label.lot, unit.lot)) &&
+    (label.serial === undefined || unit.serial === null || same(label.serial, unit.serial))
+  )
+}
 
 /**
  * @throws {Problem} `label-differs` when label and record do not bear the same date, and by name whatever

@@ -4,7 +4,14 @@ import type { z } from 'zod'
 import { Problem } from '../../../platform/http/problem.js'
 import { RoomsMoved } from '../call-work.js'
 import { findUnitsByLabel, getItems, lockUnit, type ItemRow, type UnitRow } from '../rows.js'
-import { demandCalledProduct, demandUsable, isOf, readLabel, type ReadLabel } from './label-input.js'
+import {
+  demandCalledProduct,
+  demandIdentified,
+  demandUsable,
+  isOf,
+  readLabel,
+  type ReadLabel,
+} from './label-input.js'
 import { getPlace } from './places.js'
 import { demandHold, demandStep, needsUnit, unitFacts, type ItemJob } from './step.js'
 
@@ -33,6 +40,7 @@ export async function pullItem({ work, actor, call, item, body }: Job): Promise<
 
   const label = readLabel(body, work.today)
   await demandCalledProduct(work.sql, item, label, call.caseSide)
+  demandIdentified(label)
   const held = await lockUnit(work.sql, item.unitId!)
   const unit = await findScanned(work, item, label, held, call.roomId)
   demandUsable(unit, label, call.caseSide, work.today)
@@ -74,11 +82,15 @@ async function findScanned(
   roomId: string,
 ): Promise<UnitRow> {
   if (isOf(label, held)) return held
-  const candidates = await findUnitsByLabel(work.sql, {
+  const inReach = (unit: UnitRow) => unit.placeRoomId === null || unit.placeRoomId === roomId
+  const found = await findUnitsByLabel(work.sql, {
     catalogueItemId: item.catalogueItemId!,
     lot: label.lot,
     serial: label.serial,
+    typed: label.typed,
   })
+  // Packages of one lot look alike: what stands in another room is not the one that was scanned here.
+  const candidates = [...found.filter(inReach), ...found.filter((unit) => !inReach(unit))]
   const usable = (unit: UnitRow) =>
     (unit.state === 'available' || unit.state === 'held') && unit.useByOn >= work.today && unit.sterile
   const best =
@@ -91,8 +103,7 @@ async function findScanned(
   const unit = await lockUnit(work.sql, best.id)
   // Between looking and locking somebody else may have taken it.
   if (unit.state !== best.state || unit.heldFor !== best.heldFor) throw new RoomsMoved()
-  if (unit.placeRoomId !== null && unit.placeRoomId !== roomId)
-    throw new Problem('unit-held-elsewhere', { detail: 'It stands in another room.' })
+  if (!inReach(unit)) throw new Problem('unit-held-elsewhere', { detail: 'It stands in another room.' })
   return unit
 }
 
@@ -117,6 +128,6 @@ async function exchange({ work, call, item }: Job, held: UnitRow, scanned: UnitR
     throw new Problem('unit-held-elsewhere', { detail: 'The package held here cannot stand in for it.' })
   await work.updateUnit(scanned, { state: 'available', heldFor: null }, 'swapped', rival.id)
   await work.updateUnit(held, { state: 'held', heldFor: rival.id }, 'swapped', rival.id)
-  await work.updateItem(rival, { unitId: held.id })
+  await work.updateItem(rival, { unitId: held.id, lastStep: null })
   work.event(other, rival.id, 'item.heldAgain', { ...unitFacts(held), insteadOfUnitId: scanned.id })
 }

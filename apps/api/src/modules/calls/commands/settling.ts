@@ -2,6 +2,7 @@ import type { ITEM_COMMAND_BODIES } from '@bellpull/contracts'
 import type { UndoableCommand, UnitState } from '@bellpull/domain'
 import type { z } from 'zod'
 import { Problem } from '../../../platform/http/problem.js'
+import { isStopped } from '../call-work.js'
 import { tellWaitingRooms } from '../holds.js'
 import { lockUnit } from '../rows.js'
 import { putBackTask, startPutBack } from './cancel.js'
@@ -64,20 +65,21 @@ export async function putBackItem({
 export async function shelveItem({ work, actor, call, item, body }: ItemJob<Body<'shelve'>>): Promise<void> {
   demandStep(item, 'shelve', actor)
   const unit = await lockUnit(work.sql, item.unitId!)
+  const inspect = item.putBackInspect || (body.inspect ?? false) || isStopped(unit)
   const { rows } = await work.sql.query<{ code: string }>({
     name: 'place-code',
     text: 'SELECT code FROM location WHERE id = $1',
     values: [item.putBackTo],
   })
   const code = rows[0]!.code
-  if (body.binCode !== undefined && body.binCode.toUpperCase() !== code.toUpperCase())
+  // What is to be looked at goes to its own place, whichever bin was scanned.
+  if (!inspect && body.binCode !== undefined && body.binCode.toUpperCase() !== code.toUpperCase())
     throw new Problem('invalid-input', {
       detail: `This package belongs in ${code}.`,
       errors: [{ pointer: '/binCode', message: `is not ${code}, where this package belongs` }],
     })
-  const inspect = item.putBackInspect || (body.inspect ?? false)
   await work.updateItem(item, { putBackDoneAt: work.now, putBackInspect: inspect, lastStep: null })
-  if (unit.state === 'putBack') {
+  if (unit.state === 'putBack' || isStopped(unit)) {
     const to = inspect
       ? { state: 'quarantined' as const, locationId: await getPlace(work.sql, { zone: 'quarantine' }) }
       : { state: 'available' as const, locationId: item.putBackTo! }

@@ -1,4 +1,4 @@
-import { UNDO_WITHIN_MS } from '@bellpull/domain'
+import { UNDO_WITHIN_MS, whyUnusable } from '@bellpull/domain'
 import { Problem } from '../../../platform/http/problem.js'
 import { holdFree } from '../holds.js'
 import { lockUnit, type ItemRow, type UnitRow } from '../rows.js'
@@ -26,6 +26,8 @@ export async function undoItem(job: ItemJob<unknown>): Promise<void> {
   if (work.now.getTime() - Date.parse(step.at) > UNDO_WITHIN_MS)
     throw new Problem('nothing-to-undo', { detail: 'It is more than two minutes ago.' })
   demandStep(item, 'undo', actor)
+  if (item.outcome !== null && (call.caseStatus === 'closed' || call.caseStatus === 'cancelled'))
+    throw new Problem('case-closed', { detail: 'Everything of this case had an outcome when it was closed.' })
 
   const before: Partial<ItemRow> = Object.fromEntries(
     Object.entries(step.item).map(([field, value]) => [
@@ -34,7 +36,7 @@ export async function undoItem(job: ItemJob<unknown>): Promise<void> {
     ]),
   )
   const unit = step.unit && (await lockUnit(work.sql, step.unit.id))
-  if (unit && !isStill(item, unit)) {
+  if (unit && !isStill(item, unit, whyUnusable(unit, call.caseSide, work.today) === null)) {
     await holdAnother(job, before)
   } else {
     await work.updateItem(item, { ...before, lastStep: null })
@@ -50,10 +52,10 @@ export async function undoItem(job: ItemJob<unknown>): Promise<void> {
 }
 
 /** Whether the package is where the step left it: this item's, settled by it, or let go and still free. */
-function isStill(item: ItemRow, unit: UnitRow): boolean {
+function isStill(item: ItemRow, unit: UnitRow, usable: boolean): boolean {
   if (unit.heldFor !== null) return unit.heldFor === item.id
   if (item.outcome === 'cancelled')
-    return unit.state === 'available' || (unit.state === 'putBack' && item.putBackDoneAt === null)
+    return (unit.state === 'available' && usable) || (unit.state === 'putBack' && item.putBackDoneAt === null)
   return unit.state === item.outcome
 }
 

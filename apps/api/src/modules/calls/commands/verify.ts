@@ -7,6 +7,8 @@ import { lockUnit, type CallRow, type ItemRow, type UnitRow } from '../rows.js'
 import type { CallJob } from './call-level.js'
 import {
   demandCalledProduct,
+  demandDated,
+  demandIdentified,
   demandUsable,
   hasLabel,
   isOf,
@@ -98,11 +100,13 @@ async function compare(
 ): Promise<{ unit: UnitRow | null; label: ReadLabel }> {
   const label = readLabel(input, work.today)
   await demandCalledProduct(work.sql, item, label, call.caseSide)
+  demandDated(label)
   if (!needsUnit(item)) {
-    if (label.useByOn !== undefined && label.useByOn < work.today)
+    if (label.useByOn! < work.today)
       throw new Problem('unit-expired', { detail: `Use by ${label.useByOn}; today is ${work.today}.` })
     return { unit: null, label }
   }
+  demandIdentified(label)
   const unit = await lockUnit(work.sql, item.unitId!)
   if (!isOf(label, unit))
     throw new Problem('not-the-pulled-unit', {
