@@ -86,7 +86,7 @@ need_pnpm() {
 need_packages() {
   local stamp="$DATA/stamp/packages" wanted
   wanted="$(cat pnpm-lock.yaml pnpm-workspace.yaml package.json apps/*/package.json packages/*/package.json e2e/package.json <(node -p process.versions.modules) | sha256sum)"
-  if [[ -d node_modules/.pnpm && -f "$stamp" && "$(cat "$stamp")" == "$wanted" ]]; then return; fi
+  if [[ -d node_modules/.pnpm && -d apps/api/node_modules && -d apps/web/node_modules && -f "$stamp" && "$(cat "$stamp")" == "$wanted" ]]; then return; fi
   say "Installing the packages (half a minute on a new machine)"
   CI=true pnpm install --frozen-lockfile --reporter=append-only
   printf '%s' "$wanted" >"$stamp"

@@ -34,15 +34,10 @@ export class Opening {
   /** Opens the house, part by part; what runs already and has not changed is left alone. */
   async open(): Promise<void> {
     await this.refuseTakenPort()
-    const databaseUrl = await this.openDatabase()
+    const hash = await this.build()
+    const database = await this.openDatabase()
     const smtpPort = await this.openMail()
-    const hash =
-      this.mode === 'built' ? await build(this.settings.root, this.log('build'), this.signal) : 'watch'
-    const env = apiEnvironment(this.settings, {
-      databaseUrl,
-      smtpPort,
-      mode: this.mode === 'built' ? 'production' : 'development',
-    })
+    const env = this.environment(database.url, smtpPort)
     const fingerprint = fingerprintOf(this.mode, hash, env)
     if (this.processes.find('api')?.fingerprint === fingerprint && (await this.isReady())) {
       say('  · the server runs already')
@@ -56,15 +51,22 @@ export class Opening {
 
   /** Throws everything in the house away and loads the demo again; the server is up afterwards if it was before. */
   async refill(): Promise<void> {
+    // Before anything is thrown away: a build that fails must leave the house as it was.
+    await this.build()
     const wasOpen = await this.processes.stop('api')
-    const databaseUrl = await this.openDatabase()
-    const { port } = await this.database.start(this.postgresPort())
-    await step('emptying the house', () => this.database.empty(port))
-    if (wasOpen) return this.open()
-    if (this.mode === 'built') await build(this.settings.root, this.log('build'), this.signal)
-    await this.fill(
-      apiEnvironment(this.settings, { databaseUrl, smtpPort: this.smtpPort(), mode: 'production' }),
-    )
+    const database = await this.openDatabase()
+    await step('emptying the house', () => this.database.empty(database.port))
+    if (wasOpen) await this.open()
+    else await this.fill(this.environment(database.url, following(this.settings.port, DISTANCE.smtp)))
+  }
+
+  private async build(): Promise<string> {
+    return this.mode === 'built' ? await build(this.settings.root, this.log('build'), this.signal) : 'watch'
+  }
+
+  private environment(databaseUrl: string, smtpPort: number): NodeJS.ProcessEnv {
+    const mode = this.mode === 'built' ? 'production' : 'development'
+    return apiEnvironment(this.settings, { databaseUrl, smtpPort, mode })
   }
 
   /** Closes what runs, but for the processes numbered in `spare`; the database only when `database` says so. */
@@ -121,17 +123,13 @@ export class Opening {
     return this.settings.postgresPort ?? following(this.settings.port, DISTANCE.postgres)
   }
 
-  private smtpPort(): number {
-    return this.processes.find('mail')?.ports['smtp'] ?? following(this.settings.port, DISTANCE.smtp)
-  }
-
-  private async openDatabase(): Promise<string> {
+  private async openDatabase(): Promise<{ port: number; url: string }> {
     const running = await this.database.port()
     if (running !== null) say(`  · PostgreSQL runs already on port ${running}`)
     const start = () => this.database.start(this.postgresPort())
     const { port, started } = running === null ? await step('starting PostgreSQL', start) : await start()
     this.databaseStarted ||= started
-    return this.database.url(port)
+    return { port, url: this.database.url(port) }
   }
 
   private async openMail(): Promise<number> {
@@ -159,16 +157,9 @@ export class Opening {
       ['seeding the demo where the house is empty', 'demo/seed'],
     ] as const) {
       const log = this.log(script.replace('demo/', ''))
-      await step(title, () =>
-        runLogged({
-          command: process.execPath,
-          args: this.script(script),
-          cwd: this.api,
-          env,
-          log,
-          signal: this.signal,
-        }),
-      )
+      const errand = { command: process.execPath, args: this.script(script), cwd: this.api, env, log }
+      await step(title, () => runLogged({ ...errand, signal: this.signal }))
+      say(`    ${tail(log, 1)}`)
     }
   }
 
