@@ -1,4 +1,5 @@
 import { existsSync } from 'node:fs'
+import { join } from 'node:path'
 import { defineConfig, type TestProjectConfiguration } from 'vitest/config'
 
 /** Workspace packages are read from their sources, so that no test waits for a build or sees an old one. */
@@ -25,7 +26,7 @@ const projects: TestProjectConfiguration[] = [
   nodeProject('dev', 'apps/api', { include: ['dev/**/*.test.ts'] }),
 ]
 
-if (existsSync('apps/web/vite.config.ts')) {
+if (existsSync(join(import.meta.dirname, 'apps/web/vite.config.ts'))) {
   projects.push({
     extends: 'apps/web/vite.config.ts',
     root: 'apps/web',
@@ -33,7 +34,9 @@ if (existsSync('apps/web/vite.config.ts')) {
       name: 'web',
       environment: 'happy-dom',
       include: ['{src,test}/**/*.test.ts'],
-      ...(existsSync('apps/web/test/setup.ts') && { setupFiles: ['./test/setup.ts'] }),
+      ...(existsSync(join(import.meta.dirname, 'apps/web/test/setup.ts')) && {
+        setupFiles: ['./test/setup.ts'],
+      }),
       server: { deps: { inline: ['vuetify'] } },
       ...timeouts,
     },

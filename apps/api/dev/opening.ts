@@ -88,8 +88,12 @@ export class Opening {
     return this.databaseStarted
   }
 
-  isReady(): Promise<boolean> {
-    return answers(`http://127.0.0.1:${this.settings.port}/api/v1/health/ready`)
+  private get houseUrl(): string {
+    return `http://127.0.0.1:${this.settings.port}`
+  }
+
+  private isReady(): Promise<boolean> {
+    return answers(`${this.houseUrl}/api/v1/health/ready`)
   }
 
   addresses(): [string, string][] {
@@ -201,8 +205,9 @@ export class Opening {
       '--clearScreen',
       'false',
     ]
+    const program = { args, cwd, env: { ...env, BELLPULL_API: this.houseUrl }, log: this.log('web') }
     await step('starting the pages', async () => {
-      const record = this.processes.start('web', { args, cwd, env, log: this.log('web') }, 'web', { page })
+      const record = this.processes.start('web', program, 'web', { page })
       await this.awaitAnswer('web', record, () => answers(`http://127.0.0.1:${page}/`))
     })
   }
