@@ -1,19 +1,23 @@
-import { pino, type Logger } from 'pino'
+import { pino, type DestinationStream, type Logger } from 'pino'
 
 export type { Logger } from 'pino'
 
 /**
  * The log: one JSON line each, with ids and never names. What a body held, a token or a header that carries one
  * is never written.
+ *
+ * @param to where the lines go; standard output when left out.
  */
-export const createLog = (level: string): Logger =>
-  pino({
+export function createLog(level: string, to?: DestinationStream): Logger {
+  const options = {
     level,
     base: null,
     timestamp: pino.stdTimeFunctions.isoTime,
-    formatters: { level: (label) => ({ level: label }) },
+    formatters: { level: (label: string) => ({ level: label }) },
     serializers: { err: errorWithoutValues },
-  })
+  }
+  return to ? pino(options, to) : pino(options)
+}
 
 /** Where it went wrong and why, without the rows or parameters that a database error drags along. */
 function errorWithoutValues(error: unknown): Record<string, unknown> {

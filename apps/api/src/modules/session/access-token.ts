@@ -7,10 +7,21 @@ import { Problem } from '../../platform/http/problem.js'
 export const ACCESS_TOKEN_S = 15 * 60
 
 const ISSUER = 'bellpull'
-const payload = z.object({ sub: z.uuid(), sid: z.uuid() })
+const payload = z.object({ sub: z.uuid(), sid: z.uuid(), exp: z.int() })
+
+/** How many tokens are remembered as good, so that each is verified once and not at every request. */
+const REMEMBERED = 5_000
+
+interface ReadToken {
+  readonly personId: string
+  readonly sessionId: string
+  readonly expiresAtS: number
+}
 
 /** Short-lived tokens that name a person and a session; whether that session still lives is asked each time. */
 export class AccessTokens {
+  readonly #verified = new Map<string, ReadToken>()
+
   constructor(
     private readonly secret: string,
     private readonly clock: Clock,
@@ -29,14 +40,26 @@ export class AccessTokens {
 
   /** @throws {Problem} `not-signed-in` */
   read(token: string): { personId: string; sessionId: string } {
+    const known = this.#verified.get(token)
+    if (known) {
+      if (known.expiresAtS > this.#nowS()) return known
+      this.#verified.delete(token)
+    }
+    const read = this.#verify(token)
+    if (this.#verified.size >= REMEMBERED) this.#verified.clear()
+    this.#verified.set(token, read)
+    return read
+  }
+
+  #verify(token: string): ReadToken {
     try {
       const read = jwt.verify(token, this.secret, {
         algorithms: ['HS256'],
         issuer: ISSUER,
         clockTimestamp: this.#nowS(),
       })
-      const { sub, sid } = payload.parse(read)
-      return { personId: sub, sessionId: sid }
+      const { sub, sid, exp } = payload.parse(read)
+      return { personId: sub, sessionId: sid, expiresAtS: exp }
     } catch (cause) {
       throw new Problem('not-signed-in', { cause })
     }
