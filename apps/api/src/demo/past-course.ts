@@ -101,7 +101,7 @@ export class Course {
     }
     // Tapped in one go after the walk: "entered together", which leaves the medians of the spans alone.
     const together = chance.hits(SHARE.enteredTogether)
-    const pullAt = together ? this.#soon(at, 1.6) : this.#after(at, 150, 0.5, 40)
+    const pullAt = together ? this.#soon(at, 1.6) : this.#after(at, 108, 0.5, 35)
     this.#plan(pullAt, (later) => this.#pull(later, together))
   }
 
@@ -128,7 +128,7 @@ export class Course {
 
   #deliverLater(items: readonly DemoItem[], at: Date, together: boolean): void {
     if (items.length === 0) return
-    const when = together ? this.#soon(at, 1.4) : this.#after(at, 92, 0.5, 20)
+    const when = together ? this.#soon(at, 1.4) : this.#after(at, 72, 0.5, 18)
     this.#plan(when, (later) => this.#deliver(items, later))
   }
 
@@ -216,7 +216,7 @@ export class Course {
       this.#plan(this.#soon(at, 25), (later) => this.#reject(first, later))
       items = items.slice(1)
     }
-    this.#plan(this.#after(at, 52, 0.45, 26), (later) => {
+    this.#plan(this.#after(at, 46, 0.45, 26), (later) => {
       const ready = items.filter((item) => item.outcome === null && item.stage === 'inRoom')
       if (ready.length === 0) return
       if (this.call.readBackBy === null) return this.#verifyLater(ready, later)

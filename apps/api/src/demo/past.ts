@@ -41,7 +41,7 @@ export class Past {
       if (DateTime.fromISO(this.time.day(day), { zone: 'UTC' }).weekday > 5) continue
       for (const room of ROOM_NUMBERS) {
         const chance = new Chance(`past:${day}:${room}`)
-        this.#planCase(room, day, minutesAfter(this.time.on(day, '07:30'), chance.whole(-5, 10)), chance)
+        this.#planCase(room, day, minutesAfter(this.time.on(day, '07:30'), chance.whole(-5, 65)), chance)
       }
     }
     this.books.run()

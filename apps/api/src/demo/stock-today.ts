@@ -26,6 +26,7 @@ export type LastNoneFree = ReadonlyMap<Product, Date>
  * since counts; what is too much of it has gone back to its supplier.
  */
 export function fillShelves(stock: Stock, time: StoryTime, chance: Chance, lastNoneFree: LastNoneFree): void {
+  writeOffRejected(stock, time)
   for (const one of PRODUCTS) {
     if (one.stocked === false) continue
     for (let missing = one.have - stock.countFree(one); missing > 0;) {
@@ -39,6 +40,13 @@ export function fillShelves(stock: Stock, time: StoryTime, chance: Chance, lastN
   addTraps(stock, time)
   addLoanerSet(stock, time)
   stageCarts(stock, time)
+}
+
+/** What was rejected and set aside in the past has been looked at since, and written off. */
+function writeOffRejected(stock: Stock, time: StoryTime): void {
+  const why = { at: time.on(-1, '17:40'), actor: WHO.soren, why: 'written off', item: null }
+  for (const unit of stock.units)
+    if (unit.state === 'quarantined') stock.set(unit, { state: 'writtenOff', heldFor: null }, why)
 }
 
 function usualReceipt(one: Product, time: StoryTime, chance: Chance, notBefore: Date | undefined): Receipt {
