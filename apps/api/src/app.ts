@@ -1,5 +1,5 @@
 import compression from 'compression'
-import express, { Router, type Express } from 'express'
+import express, { Router, type Express, type RequestHandler } from 'express'
 import helmet from 'helmet'
 import type { House } from './compose.js'
 import { eventsRouter } from './modules/audit/index.js'
@@ -27,7 +27,7 @@ export function createApp(house: House): Express {
   // A proxy that runs on this machine may say where a request came from, and that it came by https.
   app.set('trust proxy', 'loopback')
   app.set('etag', false)
-  app.use(requestScope, house.metrics.measure, headers(), compression())
+  app.use(requestScope, house.metrics.measure, headers(), packed())
 
   app.get('/metrics', house.metrics.handler(house.live))
   app.use(docsRouter())
@@ -69,6 +69,15 @@ function signedIn(house: House): Router {
   router.use(sizingRouter())
   router.use(notBuiltRouter(LATER_ROUTES, house))
   return router
+}
+
+/** Packs what is read. Answers to commands are short, and their way should be too. */
+function packed(): RequestHandler {
+  const pack = compression()
+  return (req, res, next) => {
+    if (req.method === 'GET') pack(req, res, next)
+    else next()
+  }
 }
 
 /** Vuetify writes its theme into a style element; nothing else may come from anywhere but this origin. */

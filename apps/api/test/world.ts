@@ -15,7 +15,11 @@ export interface World {
   /** A package; free and in the core unless said otherwise. */
   aUnit(ref: string, options?: UnitOptions): Promise<string>
   /** A call with one item for each REF given, without a package, as if nothing had been free. */
-  aCall(caseId: string, refs: readonly string[]): Promise<{ callId: string; itemIds: string[] }>
+  aCall(
+    caseId: string,
+    refs: readonly string[],
+    ask?: (text: string, values: unknown[]) => Promise<unknown>,
+  ): Promise<{ callId: string; itemIds: string[] }>
 }
 
 export interface CaseOptions {
@@ -136,13 +140,10 @@ export async function layWorld(api: TestApi, surgeonId: string): Promise<World> 
     return id
   }
 
-  async function aCall(
-    caseId: string,
-    refs: readonly string[],
-  ): Promise<{ callId: string; itemIds: string[] }> {
+  const aCall: World['aCall'] = async (caseId, refs, ask = api.rows) => {
     const callId = randomUUID()
     const now = api.clock.now()
-    await api.rows(
+    await ask(
       `INSERT INTO call (id, case_id, room_id, kind, needed_at, called_at, called_by, entered_by, revision)
        SELECT $1, k.id, k.room_id, 'early', $3, $3, k.surgeon_id, k.surgeon_id, 1 FROM surgical_case k WHERE k.id = $2`,
       [callId, caseId, now],
@@ -150,7 +151,7 @@ export async function layWorld(api: TestApi, surgeonId: string): Promise<World> 
     const itemIds: string[] = []
     for (const [index, ref] of refs.entries()) {
       const id = randomUUID()
-      await api.rows(
+      await ask(
         `INSERT INTO item (id, call_id, line_no, catalogue_item_id, category, side, hold)
          SELECT $1, $2, $3, c.id, c.category, c.side, 'noneFree' FROM catalogue_item c WHERE c.id = $4`,
         [id, callId, index + 1, items[ref]],

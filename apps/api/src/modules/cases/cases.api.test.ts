@@ -208,6 +208,27 @@ describe('POST /cases/:id/commands', () => {
     expect(api.published.all).toEqual([])
   })
 
+  it('waits for a call that is being made, and does not close over it', async () => {
+    const caseId = await world.aCase({ status: 'inProgress' })
+    const rival = api.dataSource.createQueryRunner()
+    await rival.startTransaction()
+    await rival.query('SELECT 1 FROM room WHERE number = 1 FOR UPDATE')
+    const replying = command(caseId, 'circulator', { name: 'signOut' }).then((reply) => reply)
+    const waiting = async () =>
+      (
+        await api.rows(
+          `SELECT 1 FROM pg_stat_activity WHERE datname = current_database() AND wait_event_type = 'Lock'`,
+        )
+      ).length
+    await expect.poll(waiting, { timeout: 5_000 }).toBe(1)
+    await world.aCall(caseId, ['HD-48C'], (text, values) => rival.query(text, values))
+    await rival.commitTransaction()
+    await rival.release()
+    const reply = await replying
+    expect(reply.body).toMatchObject({ type: type('not-settled') })
+    expect(await stored(caseId)).toMatchObject({ status: 'inProgress' })
+  })
+
   it('leaves a case open when the patient leaves before all is settled; then the coordinator may close it', async () => {
     const caseId = await world.aCase({ status: 'inProgress' })
     const { itemIds } = await world.aCall(caseId, ['HD-48C'])
