@@ -1,5 +1,5 @@
 import type { SecondCheck } from '@bellpull/contracts'
-import type { CaseSide } from '@bellpull/domain'
+import { isAsHeard, type CaseSide, type Heard } from '@bellpull/domain'
 import { Problem } from '../../../platform/http/problem.js'
 import type { Actor } from '../../../platform/http/session.js'
 import type { CallWork } from '../call-work.js'
@@ -71,28 +71,11 @@ export async function demandSecondCheck(
   return { checkerId: check.checkerId, method: check.method }
 }
 
-const plain = (size: string): string =>
-  size
-    .trim()
-    .toUpperCase()
-    .replace(/^0+(?=\d)/, '')
-    .replace(/\s+/g, '')
-
-/**
- * What the circulator keyed blind must be what the label says and what was called. A label of a part that
- * fits either side bears no side: *either* is right, and so is the side of the case.
- */
-function demandHeard(
-  heard: { size: string; side: string },
-  items: readonly ItemRow[],
-  caseSide: CaseSide,
-): void {
-  for (const item of items) {
-    const size = item.product?.size ?? item.product?.label ?? ''
-    const sides = item.side === 'either' ? ['either', caseSide] : [item.side]
-    if (plain(heard.size) !== plain(size) || !sides.includes(heard.side as CaseSide))
+/** What the circulator keyed blind must be what the label says and what was called. */
+function demandHeard(heard: Heard, items: readonly ItemRow[], caseSide: CaseSide): void {
+  for (const { product, side } of items)
+    if (!isAsHeard(heard, { size: product?.size ?? product?.label ?? '', side }, caseSide))
       throw new Problem('not-as-heard', {
         detail: `Heard: ${heard.size}, ${heard.side}. Read the label aloud again; if it is not what was called, reject the package.`,
       })
-  }
 }
