@@ -48,7 +48,7 @@ export function iconFont(): Plugin {
       const font = await cut(glyphs)
       const url = serving
         ? `data:font/woff2;base64,${font.toString('base64')}`
-        : `__ICON_FONT__${this.emitFile({ type: 'asset', name: 'icons.woff2', source: font })}__`
+        : placeholder(this.emitFile({ type: 'asset', name: 'icons.woff2', source: font }))
       return stylesFor(glyphs, url)
     },
     /** Styles are written by Vite itself, so the address of the font is put in at the very end. */
@@ -57,13 +57,17 @@ export function iconFont(): Plugin {
         if (file.type !== 'asset' || !file.fileName.endsWith('.css')) continue
         const text = typeof file.source === 'string' ? file.source : Buffer.from(file.source).toString('utf8')
         file.source = text.replace(
-          /__ICON_FONT__(.+?)__/g,
+          PLACEHOLDER,
           (_match, reference: string) => `/${this.getFileName(reference)}`,
         )
       }
     },
   }
 }
+
+/** A data address, for Vite leaves those alone until the end. */
+const placeholder = (reference: string): string => `data:icon-font,${reference},`
+const PLACEHOLDER = /data:icon-font,([^,]+),/g
 
 interface Glyph {
   readonly name: string

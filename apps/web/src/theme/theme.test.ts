@@ -1,5 +1,5 @@
-import { readFileSync } from 'node:fs'
 import { describe, expect, test } from 'vitest'
+import css from '../assets/tokens.css?raw'
 import { contrastRatio } from './contrast'
 import { DARK, LIGHT, SHAPE_ON, TEXT_ON, TOKEN_NAMES } from './tokens'
 
@@ -31,6 +31,5 @@ describe.each([
 })
 
 test('every token reaches the styles as a custom property', () => {
-  const css = readFileSync(new URL('../assets/tokens.css', import.meta.url), 'utf8')
   for (const name of TOKEN_NAMES) expect(css).toContain(`--${name}: rgb(var(--v-theme-${name}));`)
 })
