@@ -27,6 +27,15 @@ export function soonUntil(today: string): string {
  * The order is that of `compareCandidates` in the domain.
  */
 export async function holdFree(work: CallWork, wish: Wish): Promise<UnitRow | null> {
+  // A second look sees what came free while the first one waited.
+  const unitId = (await pickFree(work, wish)) ?? (await pickFree(work, wish))
+  if (unitId === null) return null
+  const unit = await lockUnit(work.sql, unitId)
+  await work.updateUnit(unit, { state: 'held', heldFor: wish.itemId }, 'held', wish.itemId)
+  return unit
+}
+
+async function pickFree(work: CallWork, wish: Wish): Promise<string | null> {
   const { rows } = await work.sql.query<{ id: string }>({
     name: 'pick-free',
     text: `SELECT u.id FROM unit u JOIN catalogue_item ci ON ci.id = u.catalogue_item_id
@@ -39,11 +48,7 @@ export async function holdFree(work: CallWork, wish: Wish): Promise<UnitRow | nu
             LIMIT 1 FOR UPDATE OF u`,
     values: [wish.catalogueItemId, work.today, wish.roomId, wish.caseSide, wish.now, soonUntil(work.today)],
   })
-  const picked = rows[0]
-  if (!picked) return null
-  const unit = await lockUnit(work.sql, picked.id)
-  await work.updateUnit(unit, { state: 'held', heldFor: wish.itemId }, 'held', wish.itemId)
-  return unit
+  return rows[0]?.id ?? null
 }
 
 interface EarlyHold {

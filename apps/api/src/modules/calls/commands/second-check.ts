@@ -1,11 +1,9 @@
 import type { SecondCheck } from '@bellpull/contracts'
-import { isAsHeard, type CaseSide, type Heard } from '@bellpull/domain'
+import { SECOND_CHECKERS, isAsHeard, type CaseSide, type Heard } from '@bellpull/domain'
 import { Problem } from '../../../platform/http/problem.js'
 import type { Actor } from '../../../platform/http/session.js'
 import type { CallWork } from '../call-work.js'
 import type { ItemRow } from '../rows.js'
-
-const CHECKERS = ['surgeon', 'scrub', 'circulator', 'charge']
 
 export interface CheckedBy {
   readonly checkerId: string
@@ -29,7 +27,7 @@ async function mayCheck(work: CallWork, caseId: string, checkerId: string): Prom
                OR EXISTS (SELECT 1 FROM surgical_case k WHERE k.id = $2 AND k.surgeon_id = p.id)
                OR EXISTS (SELECT 1 FROM session s WHERE s.person_id = p.id AND s.ended_at IS NULL AND s.expires_at > $4)) AS may
              FROM person p WHERE p.id = $1`,
-    values: [checkerId, caseId, CHECKERS, work.now],
+    values: [checkerId, caseId, SECOND_CHECKERS, work.now],
   })
   return rows[0]?.may ?? false
 }
