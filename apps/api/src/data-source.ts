@@ -16,6 +16,13 @@ const STATEMENT_TIMEOUT_MS = 15_000
 const IDLE_IN_TRANSACTION_MS = 10_000
 const CONNECT_TIMEOUT_MS = 5_000
 
+/**
+ * How PostgreSQL plans what requests ask. All of it reads a few rows by an index. A prepared statement is planned
+ * once for all its values, and that plan lives as long as the connection: it must not read whole tables just
+ * because they were small, or empty, when the house opened. Compiling a statement costs more than running it.
+ */
+export const SESSION_SETTINGS = '-c plan_cache_mode=force_generic_plan -c enable_seqscan=off -c jit=off'
+
 /** Days stay text (`YYYY-MM-DD`): a date without a zone must not become an instant of this machine's zone. */
 const types: pg.CustomTypesConfig = {
   getTypeParser: ((oid: number, format?: 'text' | 'binary') =>
@@ -38,6 +45,7 @@ export function createDataSource(options: DataSourceOptions): DataSource {
       statement_timeout: STATEMENT_TIMEOUT_MS,
       idle_in_transaction_session_timeout: IDLE_IN_TRANSACTION_MS,
       keepAlive: true,
+      options: SESSION_SETTINGS,
     },
     entities: ENTITIES,
     migrations: MIGRATIONS,
