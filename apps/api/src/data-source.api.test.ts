@@ -4,6 +4,8 @@ import { freshDatabase, type FreshDatabase } from '../test/database.js'
 import { createDataSource, migrate } from './data-source.js'
 import { MIGRATIONS } from './migrations/index.js'
 
+/** Other files run in other databases of the same server. */
+const here = `database = (SELECT oid FROM pg_database WHERE datname = current_database())`
 const open: DataSource[] = []
 let fresh: FreshDatabase | undefined
 afterEach(async () => {
@@ -28,7 +30,7 @@ describe('migrate', () => {
     const waiting = async () =>
       (
         (await a.query(
-          `SELECT count(*)::int AS n FROM pg_locks WHERE locktype = 'advisory' AND NOT granted`,
+          `SELECT count(*)::int AS n FROM pg_locks WHERE locktype = 'advisory' AND NOT granted AND ${here}`,
         )) as { n: number }[]
       )[0]!.n
     await expect.poll(waiting, { timeout: 5_000 }).toBe(2)
@@ -46,6 +48,8 @@ describe('migrate', () => {
     open.push(await dataSource.initialize())
     expect(await migrate(dataSource)).toHaveLength(MIGRATIONS.length)
     expect(await dataSource.query(`SELECT current_setting('statement_timeout') AS s`)).toEqual([{ s: '15s' }])
-    expect(await dataSource.query(`SELECT 1 FROM pg_locks WHERE locktype = 'advisory'`)).toEqual([])
+    expect(await dataSource.query(`SELECT 1 FROM pg_locks WHERE locktype = 'advisory' AND ${here}`)).toEqual(
+      [],
+    )
   })
 })

@@ -176,7 +176,7 @@ export class SessionService {
     }
   }
 
-  /** The token and its session, locked: two tabs take turns. */
+  /** The token and its session. Two tabs that ask at once both find it unused, as the grace would let them. */
   async #find(sql: Sql, token: string): Promise<TokenRow | undefined> {
     const { rows } = await sql.query<TokenRow>({
       text: `SELECT t.session_id, t.used_at, t.expires_at AS token_expires_at, s.created_at, s.expires_at, s.ended_at,
@@ -184,8 +184,7 @@ export class SessionService {
                FROM refresh_token t
                JOIN session s ON s.id = t.session_id
                JOIN person p ON p.id = s.person_id
-              WHERE t.token_hash = $1
-                FOR UPDATE OF t, s`,
+              WHERE t.token_hash = $1`,
       values: [hashOf(token)],
     })
     return rows[0]
