@@ -1,0 +1,102 @@
+import { onBeforeUnmount, onMounted, ref, watch, type Ref } from 'vue'
+
+/** How long after a touch its row is still held in place, in milliseconds. */
+const TOUCH_HOLDS_MS = 2_500
+
+/**
+ * Holds the row under the pointer, finger or focus in place while rows come, go and move: the page scrolls by
+ * as much as the row would have moved, with room lent above or below where there is nothing to scroll.
+ *
+ * @param list the element that holds the rows; each row bears `data-row`.
+ * @param rows what the rows are made of: the hold is taken before a change of it is drawn, and applied after.
+ */
+export function useRowAnchor(list: Ref<HTMLElement | null>, rows: () => unknown) {
+  /** Room lent above and below the list, in pixels. */
+  const above = ref(0)
+  const below = ref(0)
+  let pointed: string | null = null
+  let touchedAtMs = 0
+  let isMouse = false
+  let held: { key: string; top: number } | null = null
+
+  const rowOf = (target: EventTarget | null): string | null =>
+    target instanceof Element ? (target.closest<HTMLElement>('[data-row]')?.dataset['row'] ?? null) : null
+
+  const elementOf = (key: string): HTMLElement | null =>
+    list.value?.querySelector<HTMLElement>(`[data-row="${CSS.escape(key)}"]`) ?? null
+
+  function point(event: PointerEvent): void {
+    pointed = rowOf(event.target)
+    touchedAtMs = performance.now()
+    isMouse = event.pointerType === 'mouse'
+    if (pointed === null) giveBack()
+  }
+
+  function leave(): void {
+    pointed = null
+    giveBack()
+  }
+
+  /** The row that must not move: where the pointer rests or a finger was just now, else where the focus is. */
+  function anchorKey(): string | null {
+    if (pointed !== null && (isMouse || performance.now() - touchedAtMs < TOUCH_HOLDS_MS)) return pointed
+    const focus = document.activeElement
+    return focus !== null && list.value?.contains(focus) ? rowOf(focus) : null
+  }
+
+  function giveBack(): void {
+    above.value = 0
+    below.value = 0
+  }
+
+  watch(
+    rows,
+    () => {
+      const key = anchorKey()
+      const element = key === null ? null : elementOf(key)
+      held = key !== null && element ? { key, top: element.getBoundingClientRect().top } : null
+      if (held === null) giveBack()
+    },
+    { flush: 'pre' },
+  )
+
+  watch(
+    rows,
+    () => {
+      const element = held && elementOf(held.key)
+      if (!element || !held) return
+      const moved = element.getBoundingClientRect().top - held.top
+      if (Math.abs(moved) < 1) return
+      const page = document.documentElement
+      if (moved > 0) {
+        const left = page.scrollHeight - page.clientHeight - page.scrollTop
+        if (left < moved && list.value) {
+          below.value += moved - left
+          list.value.style.paddingBottom = `${below.value}px`
+        }
+        page.scrollTop += moved
+      } else {
+        const scrolled = Math.min(page.scrollTop, -moved)
+        page.scrollTop -= scrolled
+        if (scrolled < -moved && list.value) {
+          above.value += -moved - scrolled
+          list.value.style.paddingTop = `${above.value}px`
+        }
+      }
+    },
+    { flush: 'post' },
+  )
+
+  onMounted(() => {
+    list.value?.addEventListener('pointermove', point, { passive: true })
+    list.value?.addEventListener('pointerdown', point, { passive: true })
+    list.value?.addEventListener('pointerleave', leave, { passive: true })
+  })
+  onBeforeUnmount(() => {
+    list.value?.removeEventListener('pointermove', point)
+    list.value?.removeEventListener('pointerdown', point)
+    list.value?.removeEventListener('pointerleave', leave)
+  })
+
+  return { above, below }
+}
