@@ -1,4 +1,8 @@
+import type { Role } from '../people/roles.js'
 import type { CaseSide, Side } from './categories.js'
+
+/** Roles of the second person at a check by two. */
+export const SECOND_CHECKERS: readonly Role[] = ['surgeon', 'scrub', 'circulator', 'charge']
 
 /** What the circulator keyed while the checker read the label aloud. */
 export interface Heard {
