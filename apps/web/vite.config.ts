@@ -1,3 +1,4 @@
+/// <reference types="vitest/config" />
 import { fileURLToPath } from 'node:url'
 import vue from '@vitejs/plugin-vue'
 import { defaultClientConditions, defineConfig } from 'vite'
@@ -15,10 +16,13 @@ export default defineConfig({
     conditions: ['source', ...defaultClientConditions],
   },
   define: {
+    __VUE_OPTIONS_API__: false,
     __VUE_PROD_DEVTOOLS__: false,
     __VUE_I18N_LEGACY_API__: false,
     __VUE_I18N_FULL_INSTALL__: false,
     __INTLIFY_PROD_DEVTOOLS__: false,
+    // Sentences are compiled by plugins/compileMessage.ts.
+    __INTLIFY_DROP_MESSAGE_COMPILER__: true,
   },
   server: {
     host: '127.0.0.1',
@@ -27,5 +31,7 @@ export default defineConfig({
       '/socket.io': { target: api, ws: true },
     },
   },
+  // A test reads the tokens' styles; all others are left out of tests.
+  test: { css: { include: [/tokens\.css/] } },
   build: { target: 'es2022', assetsInlineLimit: 0, reportCompressedSize: true },
 })
