@@ -45,3 +45,7 @@ export const isNoneFree = (item: Standing & Pick<ItemView, 'hold'>): boolean => 
 /** What is said of an item: "Head 50 concentric". */
 export const nameOf = (item: Pick<ItemView, 'label' | 'variant'>): string =>
   item.variant === null || item.label.includes(item.variant) ? item.label : `${item.label} ${item.variant}`
+
+/** The same inside a sentence: "head 50 concentric"; what begins with two capitals or a figure stays. */
+export const inSentence = (name: string): string =>
+  /^[A-Z][a-z]/.test(name) ? name.charAt(0).toLowerCase() + name.slice(1) : name
