@@ -199,8 +199,10 @@ export function createHttp(fetcher: typeof fetch = (...request) => fetch(...requ
 
 /** Tabs share one cookie: where the browser can, they renew it one after the other. */
 async function inTurn(work: () => Promise<void>): Promise<void> {
-  if (typeof navigator === 'undefined' || !('locks' in navigator)) return await work()
-  await navigator.locks.request('bellpull-session', work)
+  // Not there on plain http.
+  const locks = navigator.locks as LockManager | null | undefined
+  if (!locks) return await work()
+  await locks.request('bellpull-session', work)
 }
 
 function queryOf(query: RequestOptions<z.ZodType>['query']): string {
