@@ -5,6 +5,7 @@ import { demoId } from './ids.js'
 import type { DemoPerson } from './people.js'
 import { StoryFault } from './rules.js'
 import type { Stock } from './stock.js'
+import type { HouseDays } from './story-time.js'
 
 export interface CallDraft {
   readonly of: DemoCase
@@ -21,9 +22,9 @@ export class CallSteps {
   constructor(
     readonly books: Books,
     readonly stock: Stock,
-    readonly zone: string,
+    readonly days: HouseDays,
   ) {
-    this.holding = new Holding(stock, zone)
+    this.holding = new Holding(stock, days)
   }
 
   /** A call that is going to be made; nothing is held before {@link call}. */

@@ -5,7 +5,7 @@ import { afterAll, beforeAll, describe, expect, test } from 'vitest'
 import { freshDatabase, type FreshDatabase } from '../../test/database.js'
 import { createDataSource } from '../data-source.js'
 import { dayIn } from '../platform/clock.js'
-import { demoRows, fillHouse } from './demo.js'
+import { demoRows, fillHouse, tellStory } from './demo.js'
 
 /** The moment of loading; $now in the queries, with $today its day. */
 const NOW = new Date('2026-12-01T16:00:00Z')
@@ -49,6 +49,26 @@ describe('loading', () => {
     expect(today.length).toBeGreaterThanOrEqual(8)
     for (const row of today) expect(dayIn(zone, row['starts_at'] as Date)).toBe('2026-12-02')
   }, 60_000)
+})
+
+describe('the story on every day of the week', () => {
+  test.each([1, 2, 3, 4, 5, 6, 7])(
+    '2026-12-0%s: it is told to the end, with the same hands full',
+    (day) => {
+      const { stock } = tellStory(new Date(`2026-12-0${day}T04:00:00Z`), 'America/New_York')
+      const inState = (state: string) => stock.units.filter((unit) => unit.state === state)
+      expect(inState('held').map(({ product }) => product.ref)).toContain('WTH-CM-03')
+      expect(
+        stock.units
+          .filter(({ lot }) => lot === 'L26A020')
+          .map(({ state }) => state)
+          .sort(),
+      ).toEqual(['available', 'held', 'implanted'])
+      expect(inState('putBack')).toHaveLength(1)
+      expect(inState('available').length).toBeGreaterThanOrEqual(900)
+    },
+    60_000,
+  )
 })
 
 describe('rules that hold over everything that was told (each question finds nobody)', () => {

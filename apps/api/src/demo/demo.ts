@@ -8,7 +8,7 @@ import { holdRows, tableRows, type TableRows } from './rows.js'
 import { Steps } from './steps.js'
 import { fillShelves } from './stock-today.js'
 import { Stock } from './stock.js'
-import { storyTime, withinToday } from './story-time.js'
+import { HouseDays, storyTime, withinToday, type StoryTime } from './story-time.js'
 import { tellHips } from './today-hip.js'
 import { tellKnees } from './today-knee.js'
 import { tellShoulders } from './today-shoulder.js'
@@ -19,18 +19,25 @@ export interface DemoRows {
   readonly holds: ReturnType<typeof holdRows>
 }
 
+/** The story told to the end: what the house's books and shelves hold at 10:45. */
+export interface Told {
+  readonly time: StoryTime
+  readonly books: Books
+  readonly stock: Stock
+}
+
 /**
- * The whole demo house as rows, without a database: the same rows for the same moment and zone.
+ * Tells the whole story, ninety days and the morning of today.
  *
  * @param now the moment that is 10:45 of the story.
  * @param zone the house's IANA zone.
  * @throws {StoryFault} when the story breaks a rule of the house.
  */
-export async function demoRows(now: Date, zone: string): Promise<DemoRows> {
+export function tellStory(now: Date, zone: string): Told {
   const time = storyTime(now, zone)
   const books = new Books()
   const stock = new Stock(books)
-  const steps = new Steps(books, stock, zone)
+  const steps = new Steps(books, stock, new HouseDays(zone))
 
   const lastNoneFree = new Past(books, steps, time).tell()
   fillShelves(stock, time, new Chance('shelves'), lastNoneFree)
@@ -50,7 +57,12 @@ export async function demoRows(now: Date, zone: string): Promise<DemoRows> {
     one.startsAt = starts[index] ?? one.startsAt
   })
   planAhead(books, time)
+  return { time, books, stock }
+}
 
+/** The whole demo house as rows, without a database: the same rows for the same moment and zone. */
+export async function demoRows(now: Date, zone: string): Promise<DemoRows> {
+  const { time, books, stock } = tellStory(now, zone)
   const people = { table: 'person', rows: await personRows(time.on(-400, '09:00')) }
   return { tables: [people, ...tableRows(books, stock, time.on(-120, '09:00'))], holds: holdRows(stock) }
 }

@@ -1,10 +1,10 @@
-import { CATEGORY_RULES, EXPIRES_SOON_DAYS, type Category } from '@bellpull/domain'
-import { dayIn } from '../platform/clock.js'
+import { CATEGORY_RULES, type Category } from '@bellpull/domain'
 import type { DemoCall, DemoItem, DemoUnit } from './books.js'
 import type { Product } from './catalogue.js'
 import { demoId } from './ids.js'
 import type { DemoPerson } from './people.js'
 import type { Stock } from './stock.js'
+import type { HouseDays } from './story-time.js'
 
 /** What is called: a product of the catalogue, or something in words. */
 export type Wanted = { readonly product: Product } | { readonly text: string }
@@ -17,7 +17,7 @@ export const unitFacts = (unit: DemoUnit | null): Record<string, unknown> =>
 export class Holding {
   constructor(
     private readonly stock: Stock,
-    private readonly zone: string,
+    private readonly days: HouseDays,
   ) {}
 
   add(call: DemoCall, wanted: Wanted, replaces: DemoItem | null): DemoItem {
@@ -61,12 +61,12 @@ export class Holding {
   hold(item: DemoItem, at: Date, now: boolean): void {
     if (item.hold === 'notStocked' || !item.product) return
     const { of } = item.call
-    const soon = new Date(at.getTime() + EXPIRES_SOON_DAYS * 86_400_000)
+    const { day, soonUntil } = this.days.of(at)
     const where = {
       room: of.room,
       side: of.side,
-      today: dayIn(this.zone, at),
-      soonUntil: dayIn(this.zone, soon),
+      today: day,
+      soonUntil,
       now,
     }
     const [unit] = this.stock.free(item.product, where)

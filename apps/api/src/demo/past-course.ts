@@ -1,4 +1,5 @@
 import { DateTime } from 'luxon'
+import type { Stage } from '@bellpull/domain'
 import type { DemoCall, DemoItem } from './books.js'
 import { PRODUCTS, type Product } from './catalogue.js'
 import { WHO, type DemoPerson } from './people.js'
@@ -42,7 +43,7 @@ export class Course {
     private readonly past: PastCall,
     private readonly startsAt: Date,
   ) {
-    const { hour } = DateTime.fromJSDate(startsAt, { zone: options.steps.zone })
+    const { hour } = DateTime.fromJSDate(startsAt, { zone: options.steps.days.zone })
     const crowded = hour === 7 || (hour >= 11 && hour < 13) ? 1.35 : 1
     const far = 1 + (call.of.room - 1) * 0.035
     const family = call.items.some(({ product }) => product?.kind === 'insert') ? 1.15 : 1
@@ -91,13 +92,17 @@ export class Course {
 
   #accept(at: Date): void {
     const { steps, chance } = this.options
-    const items = this.#open()
+    const items = standing(this.call.items, 'called').filter(({ hold }) => hold !== 'noneFree')
     const by = chance.pick([WHO.jory, this.call.of.circulator, WHO.casimir, WHO.lindy])
     steps.accept(items, at, by)
     if (chance.hits(SHARE.takenOver)) {
       const other = chance.pick([WHO.jory, WHO.lindy].filter((one) => one !== by))
       const [first] = items
-      if (first) this.#plan(this.#after(at, 20, 0.3), (later) => steps.takeOver(first, later, other))
+      if (first)
+        this.#plan(this.#after(at, 20, 0.3), (later) => {
+          if (standing([first], 'accepted', 'pulled', 'inRoom').length === 1)
+            steps.takeOver(first, later, other)
+        })
     }
     // Tapped in one go after the walk: "entered together", which leaves the medians of the spans alone.
     const together = chance.hits(SHARE.enteredTogether)
@@ -107,7 +112,7 @@ export class Course {
 
   #pull(at: Date, together: boolean): void {
     const { steps, chance } = this.options
-    const open = this.#open()
+    const open = standing(this.call.items, 'accepted')
     const inBins = open.filter((item) => item.category !== 'other')
     steps.pull(inBins, at, chance.pick([WHO.casimir, WHO.lindy]), chance.hits(SHARE.typed))
     const [first] = inBins
@@ -135,21 +140,29 @@ export class Course {
   /** Another size after pulling: the first goes back to its bin, the new one is fetched. */
   #change(item: DemoItem, to: Product, at: Date): void {
     const { steps, provide } = this.options
+    if (standing([item], 'pulled').length === 0) return
     provide(to, at)
     const next = steps.change(item, at, this.call.of.scrub, to, 'size changed')
     this.#shelveLater(item, at)
-    this.#plan(this.#after(at, 30, 0.5), (accepted) => {
-      steps.accept([next], accepted, WHO.jory)
-      this.#plan(this.#after(accepted, 140, 0.5, 40), (pulled) => {
-        steps.pull([next], pulled, WHO.casimir)
-        this.#deliverLater([next], pulled, false)
+    this.#fetch(next, this.#after(at, 30, 0.5))
+  }
+
+  /** An item that begins anew, after another size was chosen or its package rejected. */
+  #fetch(item: DemoItem, when: Date): void {
+    const { steps } = this.options
+    this.#plan(when, (at) => {
+      steps.accept(standing([item], 'called'), at, WHO.jory)
+      this.#plan(this.#after(at, 110, 0.5, 35), (pulled) => {
+        steps.pull(standing([item], 'accepted'), pulled, WHO.casimir)
+        this.#deliverLater([item], pulled, false)
       })
     })
   }
 
   #deliver(brought: readonly DemoItem[], at: Date): void {
     const { steps, chance } = this.options
-    const items = brought.filter((item) => item.outcome === null)
+    const items = standing(brought, 'accepted', 'pulled')
+    if (items.length === 0) return
     const { circulator } = this.call.of
     steps.deliver(items, at, chance.hits(0.6) ? WHO.jory : circulator)
     const inWords = items.filter((item) => item.category === 'other')
@@ -168,9 +181,9 @@ export class Course {
     if (!from) return
     const to = chance.pick([WHO.wren, WHO.tobiah, WHO.ifeoma].filter((one) => one !== from))
     this.#plan(this.#soon(at, 6), (later) => {
-      const mine = items.filter((item) => item.outcome === null && item.stage === 'inRoom')
+      const mine = standing(items, 'inRoom')
       steps.handOver(mine, later, from, to)
-      this.#plan(this.#soon(later, 8), (taken) => steps.take(mine, taken, to))
+      this.#plan(this.#soon(later, 8), (taken) => steps.take(standing(mine, 'inRoom', 'verified'), taken, to))
     })
   }
 
@@ -184,17 +197,14 @@ export class Course {
     steps.confirm(call, at, call.of.scrub, standby ? 5 : chance.pick([0, 5, 5]))
     // Of what stood by only the last is wanted; the rest goes back.
     if (standby) for (const item of open.slice(0, -1)) this.#giveBack(item, at)
-    this.#verifyLater(
-      this.#open().filter((item) => item.stage === 'inRoom'),
-      at,
-    )
+    this.#verifyLater(standing(call.items, 'inRoom'), at)
   }
 
   #giveBack(item: DemoItem, at: Date): void {
     const { steps } = this.options
     if (item.stage === 'inRoom' || item.stage === 'pulled') {
       this.#plan(this.#soon(at, 15), (later) => {
-        if (item.outcome !== null) return
+        if (standing([item], 'pulled', 'inRoom').length === 0) return
         steps.putBack([item], later, this.call.of.circulator, 'other size chosen')
         this.#shelveLater(item, later)
       })
@@ -207,17 +217,16 @@ export class Course {
     if (items.length === 0) return
     const [first] = items
     if (first?.category === 'implant' && chance.hits(SHARE.refused)) {
-      this.#plan(this.#soon(at, 20), (later) =>
-        steps.refuse(first, later, circulator, {
-          problem: chance.pick(['not-as-heard', 'wrong-item', 'not-intact']),
-        }),
-      )
+      this.#plan(this.#soon(at, 20), (later) => {
+        const problem = chance.pick(['not-as-heard', 'wrong-item', 'not-intact'])
+        if (standing([first], 'inRoom').length === 1) steps.refuse(first, later, circulator, { problem })
+      })
     } else if (first?.category === 'implant' && chance.hits(SHARE.rejected)) {
       this.#plan(this.#soon(at, 25), (later) => this.#reject(first, later))
       items = items.slice(1)
     }
     this.#plan(this.#after(at, 46, 0.45, 26), (later) => {
-      const ready = items.filter((item) => item.outcome === null && item.stage === 'inRoom')
+      const ready = standing(items, 'inRoom')
       if (ready.length === 0) return
       if (this.call.readBackBy === null) return this.#verifyLater(ready, later)
       steps.verify(ready, later, circulator, { checker: scrub, method: chance.hits(0.75) ? 'spoken' : 'pin' })
@@ -227,15 +236,10 @@ export class Course {
 
   #reject(item: DemoItem, at: Date): void {
     const { steps, provide, chance } = this.options
+    if (standing([item], 'inRoom').length === 0) return
     if (item.product) provide(item.product, at)
     steps.reject(item, at, this.call.of.circulator, chance.pick(['torn', 'wet', 'dropped', 'dusty', 'label']))
-    this.#plan(this.#after(at, 20, 0.4), (accepted) => {
-      steps.accept([item], accepted, WHO.jory)
-      this.#plan(this.#after(accepted, 130, 0.4, 40), (pulled) => {
-        steps.pull([item], pulled, WHO.lindy)
-        this.#deliverLater([item], pulled, false)
-      })
-    })
+    this.#fetch(item, this.#after(at, 20, 0.4))
   }
 
   #useLater(items: readonly DemoItem[], at: Date): void {
@@ -287,6 +291,10 @@ export class Course {
     this.options.steps.books.plan(at, run)
   }
 }
+
+/** Those of these items that still stand at one of these stages: something else may have come between. */
+const standing = (items: readonly DemoItem[], ...stages: Stage[]): DemoItem[] =>
+  items.filter((item) => item.outcome === null && stages.includes(item.stage))
 
 /** The next size of the same kind and variant: up, else down; `null` where there is none. */
 export function nearest(of: Product | null): Product | null {

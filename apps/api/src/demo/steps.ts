@@ -1,6 +1,5 @@
 import type { EventType } from '@bellpull/contracts'
 import { CATEGORY_RULES, type ItemCommandName } from '@bellpull/domain'
-import { dayIn } from '../platform/clock.js'
 import type { DemoItem } from './books.js'
 import { CallSteps } from './call-steps.js'
 import type { Product } from './catalogue.js'
@@ -61,7 +60,7 @@ export class Steps extends CallSteps {
       if (second === undefined && CATEGORY_RULES[item.category].check === 'two-people')
         throw new StoryFault('an implant verified by one')
       if (second?.checker === by) throw new StoryFault('both checks by one person')
-      if (item.unit && item.unit.useByOn < dayIn(this.zone, at)) throw new StoryFault('expired at verify')
+      if (item.unit && item.unit.useByOn < this.days.of(at).day) throw new StoryFault('expired at verify')
       Object.assign(item, {
         stage: 'verified',
         verifiedAt: at,

@@ -1,4 +1,5 @@
 import { DateTime } from 'luxon'
+import { EXPIRES_SOON_DAYS } from '@bellpull/domain'
 import { boundsOfDay, dayIn } from '../platform/clock.js'
 
 /** The moment of the story that is *now* whenever the demo is loaded. */
@@ -63,4 +64,35 @@ export function withinToday(time: StoryTime, starts: readonly Date[]): Date[] {
     result[index] = new Date(placed[i]!)
   })
   return result
+}
+
+/** A day of the house, and the last one on which a use-by date counts as soon. */
+export interface HouseDay {
+  readonly day: string
+  readonly soonUntil: string
+}
+
+/** The house's days by instant, remembered: the story asks for the same few days thousands of times. */
+export class HouseDays {
+  #from = Number.POSITIVE_INFINITY
+  #to = Number.NEGATIVE_INFINITY
+  #known: HouseDay = { day: '', soonUntil: '' }
+
+  constructor(readonly zone: string) {}
+
+  of(at: Date): HouseDay {
+    const ms = at.getTime()
+    if (ms >= this.#from && ms < this.#to) return this.#known
+    const day = dayIn(this.zone, at)
+    const { from, to } = boundsOfDay(this.zone, day)
+    this.#from = from.getTime()
+    this.#to = to.getTime()
+    this.#known = {
+      day,
+      soonUntil: DateTime.fromISO(day, { zone: 'UTC' })
+        .plus({ days: EXPIRES_SOON_DAYS })
+        .toFormat('yyyy-MM-dd'),
+    }
+    return this.#known
+  }
 }
