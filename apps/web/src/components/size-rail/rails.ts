@@ -120,15 +120,17 @@ export function rowsOf(sizes: readonly SizeView[], most: number): SizeView[][] {
   if (widest > most) return chunks(sizes, evenly(sizes.length, most))
   if (widest === 1) return chunks(sizes, evenly(sizes.length, most))
   const rows: SizeView[][] = []
+  const limit = Math.max(widest, evenly(sizes.length, most))
   for (const group of groups) {
     const row = rows.at(-1)
-    if (row && row.length + group.length <= most) row.push(...group)
+    if (row && row.length + group.length <= limit) row.push(...group)
     else rows.push([...group])
   }
   return rows
 }
 
-const evenly = (count: number, most: number): number => Math.ceil(count / Math.ceil(count / Math.max(1, most)))
+const evenly = (count: number, most: number): number =>
+  Math.ceil(count / Math.ceil(count / Math.max(1, most)))
 
 function chunks<T>(all: readonly T[], size: number): T[][] {
   return Array.from({ length: Math.ceil(all.length / size) }, (_, index) =>
@@ -154,7 +156,13 @@ export function endsOf(diametersMm: readonly number[]): readonly [fromMm: number
 export function fractionOf(diametersMm: readonly number[], mm: number): number {
   const centres = [endsOf(diametersMm)[0], ...diametersMm, endsOf(diametersMm)[1]]
   const at = [0, ...diametersMm.map((_, index) => (index + 0.5) / diametersMm.length), 1]
-  const next = Math.min(Math.max(1, centres.findIndex((centre) => centre >= mm)), centres.length - 1)
+  const next = Math.min(
+    Math.max(
+      1,
+      centres.findIndex((centre) => centre >= mm),
+    ),
+    centres.length - 1,
+  )
   if (mm >= centres.at(-1)!) return 1
   const from = centres[next - 1]!
   const share = (mm - from) / (centres[next]! - from)
@@ -166,7 +174,10 @@ export function mmAt(diametersMm: readonly number[], fraction: number): number {
   const centres = [endsOf(diametersMm)[0], ...diametersMm, endsOf(diametersMm)[1]]
   const at = [0, ...diametersMm.map((_, index) => (index + 0.5) / diametersMm.length), 1]
   const wanted = Math.min(1, Math.max(0, fraction))
-  const next = Math.max(1, at.findIndex((place) => place >= wanted))
+  const next = Math.max(
+    1,
+    at.findIndex((place) => place >= wanted),
+  )
   const share = (wanted - at[next - 1]!) / (at[next]! - at[next - 1]!)
   return centres[next - 1]! + share * (centres[next]! - centres[next - 1]!)
 }
@@ -214,7 +225,11 @@ const SPOKEN_ALONE = /^[A-Z][a-z]/
  * What is said for a size without its variant: "head 50"; for what has a name of its own, that name.
  * @param part the part's word ("head"), for parts; supplies take the name of their rail.
  */
-export function spokenSize(rail: Pick<RailView, 'kind' | 'label'>, size: Pick<SizeView, 'label'>, part: string): string {
+export function spokenSize(
+  rail: Pick<RailView, 'kind' | 'label'>,
+  size: Pick<SizeView, 'label'>,
+  part: string,
+): string {
   if (rail.kind !== 'other' && rail.kind !== 'cement') return `${part} ${size.label}`
   if (SPOKEN_ALONE.test(size.label)) return lowerFirst(size.label)
   return `${lowerFirst(rail.label)} ${size.label}`

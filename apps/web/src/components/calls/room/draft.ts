@@ -102,7 +102,9 @@ export function rangesIn(draft: Draft): DraftLine[][] {
 
 /** Lines of one rail together, in the order in which the rails were first touched. */
 export function groupsOf(lines: readonly DraftLine[]): DraftLine[][] {
-  return [...new Set(lines.map((one) => one.railKey))].map((key) => lines.filter((one) => one.railKey === key))
+  return [...new Set(lines.map((one) => one.railKey))].map((key) =>
+    lines.filter((one) => one.railKey === key),
+  )
 }
 
 /** "head 48, 50, 52 concentric" for a range; else every line as it is said. */
@@ -117,7 +119,8 @@ export function sayLines(lines: readonly DraftLine[], text = ''): string {
   return [...parts, ...(text.trim() === '' ? [] : [text.trim()])].join(', ')
 }
 
-const sayOne = (line: DraftLine): string => (line.quantity > 1 ? `${line.quantity} × ${line.said}` : line.said)
+const sayOne = (line: DraftLine): string =>
+  line.quantity > 1 ? `${line.quantity} × ${line.said}` : line.said
 
 /** The call as the server takes it. */
 export function bodyOf(draft: Draft, of: Pick<CaseView, 'side'>): MakeCall {

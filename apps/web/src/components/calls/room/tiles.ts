@@ -1,5 +1,6 @@
 import type { ItemView } from '@bellpull/contracts'
 import { PART_KINDS } from '@bellpull/domain'
+import { isNoneFree } from '@/composables/item'
 
 /** What was called, large: one tile a part, as it is said aloud. */
 export interface CalledTile {
@@ -9,13 +10,19 @@ export interface CalledTile {
   /** "50", "48, 50, 52", "2 × 40", or the words themselves. */
   readonly size: string
   readonly variant: string | null
+  /** No package could be held for it. */
+  readonly noneFree: boolean
 }
 
 /** Items of one call as tiles; a range stands in one, and so does what is called in number. */
 export function tilesOf(items: readonly ItemView[]): CalledTile[] {
   const likeness = (item: ItemView): string =>
-    item.category === 'implant' ? `${item.kind} ${item.partName} ${item.variant ?? ''}` : item.catalogueItemId ?? item.id
-  const groups = [...new Set(items.map(likeness))].map((key) => items.filter((item) => likeness(item) === key))
+    item.category === 'implant'
+      ? `${item.kind} ${item.partName} ${item.variant ?? ''}`
+      : (item.catalogueItemId ?? item.id)
+  const groups = [...new Set(items.map(likeness))].map((key) =>
+    items.filter((item) => likeness(item) === key),
+  )
   return groups
     .map((group): CalledTile => {
       const first = group[0]!
@@ -25,8 +32,10 @@ export function tilesOf(items: readonly ItemView[]): CalledTile[] {
       return {
         key: first.id,
         part,
-        size: count > 1 && Number.isInteger(count) ? `${count} × ${sizes.join(', ')}` : sizes.join(', ') || size,
+        size:
+          count > 1 && Number.isInteger(count) ? `${count} × ${sizes.join(', ')}` : sizes.join(', ') || size,
         variant: first.variant,
+        noneFree: group.some(isNoneFree),
       }
     })
     .sort((a, b) => orderOf(a, items) - orderOf(b, items))
