@@ -81,6 +81,13 @@ describe('a socket', () => {
     ])
   })
 
+  it('hears deltas in order when they were made known in another', async () => {
+    const { heard } = await connected(person.token)
+    for (const revision of [10, 12, 11]) publisher().delta(delta(revision))
+    await vi.waitFor(() => expect(heard).toHaveLength(3), TIMEOUT)
+    expect(heard.map(([, message]) => message)).toEqual([10, 11, 12].map(delta))
+  })
+
   it('that sends anything is closed', async () => {
     const { socket } = await connected(person.token)
     const other = await connected(person.token)
@@ -120,7 +127,7 @@ describe('a socket', () => {
     await vi.waitFor(() => expect(looks).toHaveBeenCalled(), TIMEOUT)
     await looks.mock.results[0]!.value
     looks.mockRestore()
-    publisher().delta(delta(10))
+    publisher().delta(delta(13))
     await vi.waitFor(() => expect(heard).toHaveLength(1), TIMEOUT)
     expect(socket.connected).toBe(true)
     person = await api.signInAs('circulator')

@@ -5,6 +5,8 @@ import { Server, type DefaultEventsMap, type Socket } from 'socket.io'
 import type { Logger } from '../log.js'
 import { toProblem } from '../http/problem.js'
 import type { Actor, Authenticator } from '../http/session.js'
+import { Gathered } from './gathered.js'
+import { InOrder } from './in-order.js'
 import type { Delta, Publisher } from './publisher.js'
 
 /** Who is signed in, as the sockets ask. */
@@ -40,6 +42,10 @@ export class SocketServer implements Publisher {
   readonly #options: Required<SocketServerOptions>
   #io: Server<DefaultEventsMap, Emits, DefaultEventsMap, SocketData> | null = null
   #timers: NodeJS.Timeout[] = []
+  readonly #deltas = new InOrder((delta) => this.#io?.to(BOARD).emit('board:delta', delta as never))
+  readonly #stock = new Gathered((catalogueItemIds) =>
+    this.#io?.to(BOARD).emit('stock:changed', { catalogueItemIds }),
+  )
 
   constructor(options: SocketServerOptions) {
     this.#options = { maxQueuedBytes: 1 << 20, queueCheckMs: 500, sessionCheckMs: 5_000, ...options }
@@ -69,11 +75,11 @@ export class SocketServer implements Publisher {
   }
 
   delta(delta: Delta): void {
-    this.#io?.to(BOARD).emit('board:delta', delta as never)
+    this.#deltas.add(delta)
   }
 
   stockChanged(catalogueItemIds: string[]): void {
-    this.#io?.to(BOARD).emit('stock:changed', { catalogueItemIds })
+    this.#stock.add(catalogueItemIds)
   }
 
   notice(message: { kind: string } & Record<string, unknown>): void {
@@ -93,6 +99,8 @@ export class SocketServer implements Publisher {
   async close(): Promise<void> {
     for (const timer of this.#timers) clearInterval(timer)
     this.#timers = []
+    this.#deltas.close()
+    this.#stock.close()
     await this.#io?.close()
     this.#io = null
   }
