@@ -22,8 +22,8 @@ export function isHalfLabel(scan: string, today: string): boolean {
 /** A HIBC second barcode cannot be read alone; its flag follows the plus sign. */
 const isSecondary = (scan: string): boolean => /^\*?\+[$\d]/.test(scan.trim())
 
-/** Two barcodes are one label when both together can be read. */
+/** Two barcodes are one label when each is a half and both together can be read. */
 export function pairOf(first: string, second: string, today: string): Scan | null {
-  if (first === second) return null
+  if (first === second || !isHalfLabel(second, today)) return null
   return parseScan([first, second], today).ok ? [first, second] : null
 }

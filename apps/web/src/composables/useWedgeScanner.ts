@@ -51,7 +51,9 @@ export function useWedgeScanner(onScan: (scan: Scan) => void, { enabled = true }
   }
 
   function down(event: KeyboardEvent): void {
-    if (!toValue(enabled) || event.isComposing || isTyping(event)) return wedge.reset()
+    const field = fieldOf(event)
+    const isTheirs = field !== null && field.dataset['scan'] === undefined
+    if (!toValue(enabled) || event.isComposing || isTheirs) return wedge.reset()
     const read = wedge.press({
       key: event.key,
       ctrl: event.ctrlKey,
@@ -60,10 +62,15 @@ export function useWedgeScanner(onScan: (scan: Scan) => void, { enabled = true }
       atMs: event.timeStamp,
     })
     if (!read.take) return
+    // In the field for scans people type too, and fast: letters stay, separators and the closing Enter go.
+    const isLetter = [...event.key].length === 1 && event.key >= ' ' && !event.ctrlKey && !event.altKey
+    if (field !== null && (isLetter || (read.scan !== null && !sameLetters(read.scan, field.value)))) return
     // The closing Enter must not press the button that has the focus, nor the keys scroll the page.
     event.preventDefault()
     event.stopPropagation()
-    if (read.scan !== null) take(read.scan)
+    if (read.scan === null) return
+    if (field !== null) empty(field)
+    take(read.scan)
   }
 
   function up(event: KeyboardEvent): void {
@@ -81,17 +88,21 @@ export function useWedgeScanner(onScan: (scan: Scan) => void, { enabled = true }
   return { half, take, flush }
 }
 
-/** Somebody types into a field: those keys are theirs. */
-function isTyping(event: KeyboardEvent): boolean {
+type Field = HTMLElement & { value: string }
+
+/** The field into which somebody types: those keys are theirs, unless it is one for scans (`data-scan`). */
+function fieldOf(event: KeyboardEvent): Field | null {
   const target = event.composedPath()[0]
-  if (!(target instanceof HTMLElement)) return false
-  if (
-    target.isContentEditable ||
-    target instanceof HTMLTextAreaElement ||
-    target instanceof HTMLSelectElement
-  )
-    return true
-  return (
-    target instanceof HTMLInputElement && !['button', 'checkbox', 'radio', 'submit'].includes(target.type)
-  )
+  if (!(target instanceof HTMLElement)) return null
+  const isField = target instanceof HTMLTextAreaElement || target instanceof HTMLSelectElement
+  const types = target instanceof HTMLInputElement && !/^(button|checkbox|radio|submit)$/.test(target.type)
+  return isField || types || target.isContentEditable ? (target as Field) : null
+}
+
+/** Separators leave no trace in a field. */
+const sameLetters = (scan: string, typed: string): boolean => scan.replaceAll('\u001d', '') === typed.trim()
+
+function empty(field: Field): void {
+  field.value = ''
+  field.dispatchEvent(new Event('input', { bubbles: true }))
 }

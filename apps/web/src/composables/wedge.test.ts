@@ -27,8 +27,8 @@ function type(keys: readonly (string | Partial<Key>)[], everyMs = 8): { scans: s
 }
 
 const ELEMENTS = '0109521234543213'
-const scanOf = (...parts: (string | Partial<Key>)[]) => [
-  ...parts.flatMap((part) => (typeof part === 'string' ? [...part] : [part])),
+const scanOf = (...parts: (string | Partial<Key>)[]): (string | Partial<Key>)[] => [
+  ...parts.flatMap<string | Partial<Key>>((part) => (typeof part === 'string' ? [...part] : [part])),
   'Enter',
 ]
 

@@ -48,7 +48,7 @@ export function createWedge() {
     if (key.alt) {
       if (!/^\d$/.test(key.key)) return pass()
       altDigits += key.key
-      return { take: running, scan: null } as Read
+      return running ? { take: true, scan: null } : { take: false }
     }
     if (key.key === GS || key.key === 'F8' || (key.ctrl && (key.key === ']' || key.key === GS))) {
       // Alone it is a person's key; at the start of a scan it says nothing.
