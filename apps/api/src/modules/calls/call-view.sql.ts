@@ -38,7 +38,7 @@ const alternatives = (today: string): string => `
                         AND (u.place_room_id IS NULL OR u.place_room_id = c.room_id)
             WHERE a.system_id = ci.system_id AND a.kind = ci.kind AND a.id <> ci.id AND a.active
               AND a.side IN ('either', k.side)
-              AND a.group_code IS NOT DISTINCT FROM ci.group_code
+              AND (ci.kind NOT IN ('liner', 'insert') OR a.group_code IS NOT DISTINCT FROM ci.group_code)
               AND a.type_code IS NOT DISTINCT FROM ci.type_code
             GROUP BY a.id
             ORDER BY step, other_variant, a.size_order
