@@ -1,3 +1,4 @@
+import { createSecretKey, type KeyObject } from 'node:crypto'
 import jwt from 'jsonwebtoken'
 import { z } from 'zod'
 import type { Clock } from '../../platform/clock.js'
@@ -22,16 +23,21 @@ interface ReadToken {
 export class AccessTokens {
   readonly #verified = new Map<string, ReadToken>()
 
+  /** Made once: from a text, the library would make it anew for every token, after a try to read it as a public key. */
+  readonly #secret: KeyObject
+
   constructor(
-    private readonly secret: string,
+    secret: string,
     private readonly clock: Clock,
-  ) {}
+  ) {
+    this.#secret = createSecretKey(Buffer.from(secret))
+  }
 
   issue(personId: string, sessionId: string): string {
     const iat = this.#nowS()
     return jwt.sign(
       { sub: personId, sid: sessionId, iss: ISSUER, iat, exp: iat + ACCESS_TOKEN_S },
-      this.secret,
+      this.#secret,
       {
         algorithm: 'HS256',
       },
@@ -53,7 +59,7 @@ export class AccessTokens {
 
   #verify(token: string): ReadToken {
     try {
-      const read = jwt.verify(token, this.secret, {
+      const read = jwt.verify(token, this.#secret, {
         algorithms: ['HS256'],
         issuer: ISSUER,
         clockTimestamp: this.#nowS(),

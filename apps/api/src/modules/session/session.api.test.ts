@@ -1,6 +1,6 @@
 import { createHash } from 'node:crypto'
 import request from 'supertest'
-import { afterAll, beforeAll, describe, expect, it } from 'vitest'
+import { afterAll, beforeAll, describe, expect, it, vi } from 'vitest'
 import { startTestApi, TEST_PASSWORD, TEST_PIN, type SignedIn, type TestApi } from '../../../test/app.js'
 import { REMEMBERED_MS } from './attempts.js'
 import { BELIEVED_MS } from './live-sessions.js'
@@ -239,6 +239,29 @@ describe('a session', () => {
     await me(token).expect(401)
     await refresh(cookie).expect(401)
     expect(await api.house.live.living([])).toEqual(new Set())
+  })
+
+  it('in use is looked at again together with all others, and nobody waits for that', async () => {
+    const [one, other] = [await browser('In Use'), await browser('Used Before')]
+    await me(one.token).expect(200)
+    await me(other.token).expect(200)
+    const later = BELIEVED_MS * 0.75
+    api.clock.forward(later)
+    const asked = vi.spyOn(api.house.database, 'query')
+    await me(one.token).expect(200)
+    await vi.waitFor(() =>
+      expect(asked.mock.calls.filter(([q]) => q.name === 'living-sessions')).toHaveLength(1),
+    )
+    await Promise.all(asked.mock.results.map(({ value }) => value as Promise<unknown>))
+    asked.mockRestore()
+
+    // Read again a moment ago: the other is still believed now, and no longer than after any other look.
+    await api.rows(`UPDATE person SET active = false WHERE email = $1`, [emailOf('Used Before')])
+    api.clock.forward(later)
+    await me(other.token).expect(200)
+    api.clock.forward(BELIEVED_MS)
+    await me(other.token).expect(401)
+    await me(one.token).expect(200)
   })
 
   it('ends for a person everywhere when the house says so', async () => {
