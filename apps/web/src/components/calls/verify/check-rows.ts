@@ -38,6 +38,8 @@ export type Cell =
 
 export const ROW_KEYS = ['part', 'side', 'ref', 'useBy', 'lot', 'package', 'pair'] as const
 export type RowKey = (typeof ROW_KEYS)[number]
+/** Rows that the label answers. */
+export const LABEL_ROWS: readonly RowKey[] = ['part', 'side', 'ref', 'useBy', 'lot']
 
 export interface CheckRow {
   readonly key: RowKey
@@ -147,11 +149,13 @@ function refRow(state: CheckState): Row {
 function useByRow({ item, label, today }: CheckState): Row {
   const base = { key: 'useBy', called: words('verify.called.caseOn', { day: dayText(today) }) } as const
   const day = label?.useByOn ?? null
-  if (day === null)
+  if (label === null || day === null)
     return { ...base, label: words('verify.label.noDate'), mark: 'notRun', says: 'notOnLabel' }
   const shown = { ...base, label: { as: 'day', text: dayText(day) } } as const
   if (day < today) return { ...shown, mark: 'differs', says: 'expired' }
-  if (item.unit !== null && item.unit.useByOn !== day)
+  // The record of another package says nothing about this one.
+  const isOwn = productOn(label, item) !== 'other' && packageOn(label, item) !== 'other'
+  if (isOwn && item.unit !== null && item.unit.useByOn !== day)
     return {
       ...shown,
       called: words('common.useBy', { day: dayText(item.unit.useByOn) }),
