@@ -4,12 +4,13 @@ import vue from '@vitejs/plugin-vue'
 import { defaultClientConditions, defineConfig } from 'vite'
 import vuetify from 'vite-plugin-vuetify'
 import { iconFont } from './build/icon-font.ts'
+import { leanZod } from './build/lean-zod.ts'
 
 /** Where the API runs while the web is served by Vite for development. */
 const api = process.env['BELLPULL_API'] ?? 'http://127.0.0.1:8420'
 
 export default defineConfig({
-  plugins: [vue(), vuetify({ autoImport: true }), iconFont()],
+  plugins: [vue(), vuetify({ autoImport: true }), iconFont(), leanZod()],
   resolve: {
     alias: { '@': fileURLToPath(new URL('src', import.meta.url)) },
     // Workspace packages are read from their sources: no build to wait for, none to be old.
