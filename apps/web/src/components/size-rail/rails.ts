@@ -78,7 +78,7 @@ export const planFor = (rail: RailView, plan: readonly PlanLine[]): PlanLine | n
 /** The variant that the plan names, or the only one there is; never a guess. */
 export function firstVariant(rail: RailView, plan: PlanLine | null): string | null {
   const variants = variantsOf(rail)
-  if (plan?.variant != null && variants.includes(plan.variant)) return plan.variant
+  if (plan !== null && plan.variant !== null && variants.includes(plan.variant)) return plan.variant
   return variants.length === 1 ? variants[0]! : null
 }
 

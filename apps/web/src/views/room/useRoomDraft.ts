@@ -11,7 +11,7 @@ import {
   variantsOf,
 } from '@/components/size-rail/rails'
 import { partAndSize } from '@/components/calls/room/tiles'
-import { useText } from './useText'
+import { useText } from '@/composables/useText'
 
 /**
  * The call that is being put together, one for each case of the room, so that a look at another case loses
