@@ -82,6 +82,8 @@ export const sizeView = z.object({
   inCore: z.int(),
   /** Held for other cases. */
   heldElsewhere: z.int(),
+  /** Kept by package; what is not is called all the same, and no package is held for it. */
+  stocked: z.boolean(),
   soonestUseByOn: day.nullable(),
 })
 export type SizeView = z.infer<typeof sizeView>

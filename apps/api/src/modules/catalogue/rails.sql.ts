@@ -30,6 +30,7 @@ SELECT coalesce(json_agg(json_build_object(
              'inRoom', n.in_room,
              'inCore', n.in_core,
              'heldElsewhere', n.held_elsewhere,
+             'stocked', ci.stocked,
              'soonestUseByOn', n.soonest
            ) ORDER BY ci.size_order, ci.variant NULLS FIRST, ci.ref) AS sizes
       FROM catalogue_item ci

@@ -23,6 +23,7 @@ const rail: RailView = {
       inRoom: mm === 48 ? 1 : 0,
       inCore: mm === 52 ? 0 : 3,
       heldElsewhere: mm === 52 ? 1 : 0,
+      stocked: true,
       soonestUseByOn: mm === 46 ? '2026-12-27' : '2028-01-01',
     })),
   ),

@@ -29,6 +29,7 @@ const aSize = (label: string, given: Partial<SizeView> = {}): SizeView => ({
   inRoom: 0,
   inCore: 1,
   heldElsewhere: 0,
+  stocked: true,
   soonestUseByOn: null,
   ...given,
 })

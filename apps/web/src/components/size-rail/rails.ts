@@ -98,6 +98,7 @@ export function ofAllVariants(sizes: readonly SizeView[]): SizeView[] {
       inRoom: sum(same, ({ inRoom }) => inRoom),
       inCore: sum(same, ({ inCore }) => inCore),
       heldElsewhere: sum(same, ({ heldElsewhere }) => heldElsewhere),
+      stocked: same.some(({ stocked }) => stocked),
       soonestUseByOn: null,
     }
   })
