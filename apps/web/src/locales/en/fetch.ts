@@ -17,6 +17,7 @@ export default {
     withoutBin: 'Without a bin',
     withoutBinHint: 'called in words, or not kept by package',
     noneFree: 'None free: tell the room what is there',
+    noneFreeHint: 'facts, not advice: the surgeon decides, and the room calls again',
     hatch: 'In the hatch',
     putBacks: 'Put back',
   },
@@ -27,8 +28,8 @@ export default {
     forRoomStandby: 'for room {room}, stand by',
     forRoom: 'for room {room}',
     early: 'early',
-    label: '{ref}, lot {lot}, use by {day}',
-    labelSerial: '{ref}, lot {lot}, serial {serial}, use by {day}',
+    label: '{ref}, lot {lot}, use by {day}',
+    labelSerial: '{ref}, lot {lot}, serial {serial}, use by {day}',
     needed: 'needed {time}',
     with: '{name} fetches it',
     withYou: 'yours',
@@ -64,11 +65,10 @@ export default {
   facts: {
     holders: 'held for {holders}',
     holder: 'room {room} ({kind})',
-    noHolder: 'no package of this size may be used',
-    none: 'no other size of this system is free',
+    noHolder: 'the house has none that may be used',
+    none: 'nothing near it is free',
     inRoom: '{size}: {n} in the room',
     inCore: '{size}: {n} in the core',
-    decides: 'Facts, not advice: the surgeon decides and the room calls again.',
   },
 
   result: {
@@ -114,6 +114,8 @@ export default {
   },
   expected: 'Called: {what}',
   scanned: 'On the label: {what}',
+  inRecord: 'In the record: {what}',
+  useBy: 'use by {day}',
 
   type: {
     title: 'Type the label',

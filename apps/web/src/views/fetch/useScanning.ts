@@ -6,6 +6,7 @@ import type { useBoardActions } from '../dispatch/useBoardActions'
 import { nameOf } from '@/composables/item'
 import { useRefusals } from '@/composables/useCommand'
 import { useText } from '@/composables/useText'
+import { useTimes } from '@/composables/useTimes'
 import type { FetchLine, FetchList } from '@/components/stock/fetch/fetch-list'
 import type { ScanResult } from '@/components/stock/fetch/scan-result'
 import { isBin } from '@/components/stock/fetch/put-back'
@@ -18,6 +19,7 @@ type Actions = Pick<ReturnType<typeof useBoardActions>, 'give' | 'send'>
 /** Scans on To fetch, one after the other: read, find what the package is for, mark it pulled, say what now. */
 export function useScanning(list: () => FetchList, actions: Actions) {
   const { t } = useText()
+  const { day } = useTimes()
   const { wordsFor } = useRefusals()
   const result = shallowRef<ScanResult>(idle())
   /** First barcode of a label whose second is awaited. */
@@ -148,7 +150,7 @@ export function useScanning(list: () => FetchList, actions: Actions) {
     if (!given.ok) {
       const { text, notSent, problem } = wordsFor(given.why)
       if (notSent) show('stop', t('fetch.result.notSent'), t('fetch.result.notSentNext'))
-      else show('stop', t('fetch.result.refused', named(line)), text, differences(problem, t))
+      else show('stop', t('fetch.result.refused', named(line)), text, differences(problem, t, day))
       return text
     }
     sayPulled(line, given.value, [...facts, ...('typed' in by ? [t('fetch.result.typed')] : [])])

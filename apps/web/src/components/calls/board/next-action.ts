@@ -124,10 +124,11 @@ export const mayConfirm = (call: CallView, viewer: Viewer): boolean =>
 const mayCancelAll = (call: CallView, viewer: Viewer): boolean =>
   callCommandPermission('cancel', viewer.role).ok && call.items.every((item) => item.stage !== 'opened')
 
-/** How loud a button is: `ring` somebody waits for it, `go` the next step of the one who has it, `plain` the rest. */
-export type Tone = 'ring' | 'go' | 'plain'
+/** How loud a button is: `ring` somebody waits for it, `go` the next step of the one who has it, the rest quieter. */
+export type Tone = 'ring' | 'go' | 'line' | 'plain'
 
 export const toneOf = (action: ActionName): Tone => {
   if (action === 'accept' || action === 'readBack') return 'ring'
-  return action === 'takeOver' || action === 'facts' || action === 'shelve' ? 'plain' : 'go'
+  if (action === 'facts' || action === 'shelve') return 'line'
+  return action === 'takeOver' ? 'plain' : 'go'
 }

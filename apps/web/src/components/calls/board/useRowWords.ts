@@ -15,6 +15,8 @@ export interface RowWords {
   readonly sideText: string
   readonly note: string
   readonly needed: string
+  /** The same where no column says what it is: "needed 11:02". */
+  readonly neededLong: string
   readonly with: string
   /** The button, or what the row waits for. */
   readonly action: ActionName | null
@@ -25,6 +27,9 @@ export interface RowWords {
 
 const HEAVY: readonly ActionName[] = ['cancel', 'cancelCall', 'notImplanted']
 
+const isTime = ({ key }: Words): boolean =>
+  key === 'dispatch.needed.at' || key === 'dispatch.needed.in' || key === 'dispatch.needed.now'
+
 /** Puts a row of the board into words. */
 export function useRowWords() {
   const { t } = useText()
@@ -33,13 +38,8 @@ export function useRowWords() {
 
   const placeOf = (call: CallView, item: ItemView): string => say(placeWords(call, item))
 
-  function calledBy(call: CallView): string {
-    const who = shortName(call.calledBy.name)
-    const at = time(call.calledAt)
-    return call.enteredBy.id === call.calledBy.id
-      ? t('dispatch.row.called', { time: at, who })
-      : t('dispatch.row.calledEntered', { time: at, who, by: shortName(call.enteredBy.name) })
-  }
+  const calledBy = (call: CallView): string =>
+    t('dispatch.row.called', { time: time(call.calledAt), who: shortName(call.calledBy.name) })
 
   /** "case LEFT, fits either side"; nothing for a part that has a badge of its own. */
   function sideText(call: CallView, item: ItemView): string {
@@ -65,13 +65,15 @@ export function useRowWords() {
   function wordsOf(row: BoardRow, viewer: Viewer, nowMs: number, undoable: boolean): RowWords {
     const { call, item } = row
     const next = nextAction(call, item, viewer)
+    const needed = neededWords(row, nowMs, time)
     return {
       name: nameOf(item),
       called: calledBy(call),
       kind: t(`dispatch.row.${call.kind}`),
       sideText: sideText(call, item),
       note: say(cordNote(row, nowMs, placeOf(call, item), time)),
-      needed: say(neededWords(row, nowMs, time)),
+      needed: say(needed),
+      neededLong: isTime(needed) ? t('dispatch.row.needed', { when: say(needed) }) : say(needed),
       with: withWhom(item, viewer),
       action: next.action,
       actionText: next.action ? buttonText(next.action, item) : t(`dispatch.waitingFor.${next.waitingFor}`),

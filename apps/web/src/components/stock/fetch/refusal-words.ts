@@ -9,10 +9,29 @@ function inWords(value: unknown): string {
     .join(', ')
 }
 
-/** Both values of a refusal that compares two, each on a line of its own; nothing for any other refusal. */
-export function differences(problem: Refusal['problem'], t: Text['t']): string[] {
-  const expected = inWords(problem?.members['expected'])
-  const scanned = inWords(problem?.members['scanned'])
+const dayOf = (value: unknown): string | null =>
+  typeof value === 'object' && value !== null && 'useByOn' in value && typeof value.useByOn === 'string'
+    ? value.useByOn
+    : null
+
+/**
+ * Both values of a refusal that compares two, each on a line of its own; else what the house says of it.
+ *
+ * @param day puts a day `YYYY-MM-DD` into words.
+ */
+export function differences(
+  problem: Refusal['problem'],
+  t: Text['t'],
+  day: (on: string) => string,
+): string[] {
+  const [called, read] = [problem?.members['expected'], problem?.members['scanned']]
+  const [inRecord, onLabel] = [dayOf(called), dayOf(read)]
+  if (inRecord !== null && onLabel !== null)
+    return [
+      t('fetch.inRecord', { what: t('fetch.useBy', { day: day(inRecord) }) }),
+      t('fetch.scanned', { what: t('fetch.useBy', { day: day(onLabel) }) }),
+    ]
+  const [expected, scanned] = [inWords(called), inWords(read)]
   return [
     ...(expected ? [t('fetch.expected', { what: expected })] : []),
     ...(scanned ? [t('fetch.scanned', { what: scanned })] : []),

@@ -16,8 +16,9 @@ export function useFetchWords() {
   const { sideText } = useRowWords()
 
   /** "for room 3, by 11:02, early" */
-  function forRoom({ call }: FetchLine, nowMs: number): string {
+  function forRoom({ call, late }: FetchLine, nowMs: number): string {
     const room = call.room.number
+    if (late) return t('fetch.line.forRoom', { room })
     const early = call.kind === 'early' ? `, ${t('fetch.line.early')}` : ''
     if (call.neededAt === null) return t('fetch.line.forRoomStandby', { room })
     if (call.kind === 'confirmed' && Date.parse(call.neededAt) - nowMs < 60_000)
@@ -28,7 +29,7 @@ export function useFetchWords() {
   function label({ item }: FetchLine, today: string): Detail[] {
     if (!item.unit) return item.ref === '' ? [] : [{ text: item.ref }]
     const { lot, serial, useByOn } = item.unit
-    const named = { ref: item.ref, lot, day: day(useByOn) }
+    const named = { ref: item.ref, lot, day: day(useByOn).replaceAll(' ', '\u00a0') }
     return [
       {
         text:
@@ -38,29 +39,30 @@ export function useFetchWords() {
     ]
   }
 
+  const lateness = ({ call, late }: FetchLine): Detail[] =>
+    late && call.neededAt ? [{ text: t('fetch.line.needed', { time: time(call.neededAt) }), late: true }] : []
+
   function walkDetails(line: FetchLine, viewer: Viewer, today: string): Detail[] {
-    const { call, item, late } = line
+    const { item } = line
     const by = item.acceptedBy
     const who =
       by &&
       (by.id === viewer.id ? t('fetch.line.withYou') : t('fetch.line.with', { name: shortName(by.name) }))
-    return [
-      ...(late && call.neededAt
-        ? [{ text: t('fetch.line.needed', { time: time(call.neededAt) }), late: true }]
-        : []),
-      ...label(line, today),
-      ...(who ? [{ text: who }] : []),
-    ]
+    return [...lateness(line), ...label(line, today), ...(who ? [{ text: who }] : [])]
   }
 
-  function hatchDetails({ item }: FetchLine, viewer: Viewer): Detail[] {
+  const hatchDetails = (line: FetchLine, viewer: Viewer): Detail[] => [
+    ...lateness(line),
+    coming(line, viewer),
+  ]
+
+  function coming({ item }: FetchLine, viewer: Viewer): Detail {
     const since = item.pulledAt === null ? '' : time(item.pulledAt)
     const by = item.acceptedBy
-    if (by?.id === viewer.id && viewer.role !== 'core')
-      return [{ text: t('fetch.hatch.comingYou', { time: since }) }]
     if (by === null || by.role === 'core')
-      return [{ text: t('fetch.hatch.nobody', { time: since }), mark: true }]
-    return [{ text: t('fetch.hatch.coming', { time: since, name: shortName(by.name) }) }]
+      return { text: t('fetch.hatch.nobody', { time: since }), mark: true }
+    if (by.id === viewer.id) return { text: t('fetch.hatch.comingYou', { time: since }) }
+    return { text: t('fetch.hatch.coming', { time: since, name: shortName(by.name) }) }
   }
 
   function putBackWhy({ call, item }: FetchLine): string {
