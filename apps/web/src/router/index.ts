@@ -12,6 +12,8 @@ declare module 'vue-router' {
     signedOut?: true
     /** The top bar shows what the view puts there (`BarContext`) in place of the navigation. */
     bar?: 'context'
+    /** The view has tabs of its own at the foot of the phone, in place of the screens'. */
+    tabs?: 'own'
   }
 }
 
@@ -36,7 +38,7 @@ export const router = createRouter({
     {
       path: '/dispatch',
       name: 'dispatch',
-      meta: { screen: 'dispatch' },
+      meta: { screen: 'dispatch', tabs: 'own' },
       component: () => import('@/views/dispatch/DispatchView.vue'),
     },
     {
