@@ -208,7 +208,6 @@ describe('a label that will not do', () => {
     ['no-such-date', (gtin: string) => `01${gtin}1727023110L1`],
     ['lot-too-long', (gtin: string) => `01${gtin}10${'X'.repeat(21)}`],
     ['unknown-ai', (gtin: string) => `01${gtin}05123`],
-    ['not-a-label', () => 'HELLO'],
     ['no-product', () => '1727013110L1'],
     ['no-lot', (gtin: string) => `01${gtin}`],
   ])('is unreadable, and why: %s', async (reason, write) => {
