@@ -6,7 +6,7 @@ import { labelsApi } from '@/api/labels'
 import { ApiProblem, NotSent } from '@/api/problem'
 import { fetchList } from '@/components/stock/fetch/fetch-list'
 import type { ItemCommand } from '@/composables/useCommand'
-import { at, call, instant, item, unit } from '@/components/calls/board/calls.fixture'
+import { at, call, instant, item, unit } from '../../../test/calls'
 import { mountWith } from '../../../test/mount'
 import { useScanning } from './useScanning'
 

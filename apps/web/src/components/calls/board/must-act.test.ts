@@ -1,6 +1,6 @@
 import type { Role } from '@bellpull/domain'
 import { describe, expect, test } from 'vitest'
-import { IFEOMA, MAGDA, call, item } from './calls.fixture'
+import { IFEOMA, MAGDA, call, item } from '../../../../test/calls'
 import { mustAct } from './must-act'
 import type { BoardRow } from './rows'
 

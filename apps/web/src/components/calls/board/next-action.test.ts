@@ -1,7 +1,7 @@
 import type { CallView, ItemView } from '@bellpull/contracts'
 import { ROLES, STAGES, type Role, type Stage } from '@bellpull/domain'
 import { describe, expect, test } from 'vitest'
-import { CASIMIR, IFEOMA, JORY, JUNIPER, PIM, TOBIAH, call, item } from './calls.fixture'
+import { CASIMIR, IFEOMA, JORY, JUNIPER, PIM, TOBIAH, call, item } from '../../../../test/calls'
 import {
   commandsHere,
   menuFor,

@@ -1,6 +1,6 @@
 import type { CallView, ItemView } from '@bellpull/contracts'
 import { describe, expect, test } from 'vitest'
-import { IFEOMA, JORY, at, call, instant, item, unit } from './calls.fixture'
+import { IFEOMA, JORY, at, call, instant, item, unit } from '../../../../test/calls'
 import {
   cordNote,
   countWords,

@@ -1,6 +1,6 @@
 import type { CallView } from '@bellpull/contracts'
 import { describe, expect, test } from 'vitest'
-import { JORY, at, call, instant, item, unit } from './calls.fixture'
+import { JORY, at, call, instant, item, unit } from '../../../../test/calls'
 import { blocksOf, boardSections, countsOf, isLateRow, type BoardSection, type BoardView } from './rows'
 import { oneWalk } from './walk'
 

@@ -1,6 +1,6 @@
 import type { ItemView, LabelView } from '@bellpull/contracts'
 import { describe, expect, test } from 'vitest'
-import { at, call, instant, item, unit } from '@/components/calls/board/calls.fixture'
+import { at, call, instant, item, unit } from '../../../../test/calls'
 import { fetchList } from './fetch-list'
 import { matchScan } from './scan-match'
 
