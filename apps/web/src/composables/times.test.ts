@@ -1,5 +1,5 @@
 import { describe, expect, test } from 'vitest'
-import { ageAs, dayOfInstant, dayText, neededAs, timeOfDay } from './times'
+import { ageAs, dayIn, dayOfInstant, dayText, neededAs, timeOfDay } from './times'
 
 const NOW = Date.parse('2032-05-12T10:52:00Z')
 
@@ -38,4 +38,12 @@ test.each([
   { ms: -5, age: { unit: 'seconds', n: 0 } },
 ])('$ms ms is $age.n $age.unit', ({ ms, age }) => {
   expect(ageAs(ms)).toEqual(age)
+})
+
+test.each([
+  ['UTC', '2034-03-31'],
+  ['Europe/Brussels', '2034-04-01'],
+  ['America/New_York', '2034-03-31'],
+])('the day of an instant in %s, to compare days with', (zone, day) => {
+  expect(dayIn('2034-03-31T22:30:00Z', zone)).toBe(day)
 })

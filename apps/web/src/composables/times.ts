@@ -23,6 +23,12 @@ export const dayOfInstant = (instant: string | number, zone: string): string =>
     .format(new Date(instant))
     .replace('Sept', 'Sep')
 
+/** The day of an instant in the house, `YYYY-MM-DD`. */
+export const dayIn = (instant: string | number, zone: string): string =>
+  formatOf(zone, { year: 'numeric', month: '2-digit', day: '2-digit' })
+    .format(new Date(instant))
+    .replace(/^(\d+)\/(\d+)\/(\d+)$/, '$3-$2-$1')
+
 /** A day `YYYY-MM-DD`, which has no zone: "31 Mar 2034". */
 export const dayText = (day: string): string => dayOfInstant(`${day}T12:00:00Z`, 'UTC')
 

@@ -65,5 +65,7 @@ export function stepsOf(events: readonly EventView[], itemId: string): Step[] {
 function secondOf({ type, data }: EventView): Step['second'] {
   const { checkedBy, method } = data
   if (type !== 'item.verified' || typeof checkedBy !== 'string') return null
-  return method === 'spoken' || method === 'pin' || method === 'touch' ? { personId: checkedBy, how: method } : null
+  return method === 'spoken' || method === 'pin' || method === 'touch'
+    ? { personId: checkedBy, how: method }
+    : null
 }

@@ -1,4 +1,11 @@
-import { EVENT_TYPES, type EventType, type EventView, type PersonRef, type ProblemCode, PROBLEMS } from '@bellpull/contracts'
+import {
+  EVENT_TYPES,
+  type EventType,
+  type EventView,
+  type PersonRef,
+  type ProblemCode,
+  PROBLEMS,
+} from '@bellpull/contracts'
 import { UNDOABLE, type UndoableCommand } from '@bellpull/domain'
 import { inSentence, nameOf } from '@/composables/item'
 import type { Text, TextKey } from '@/composables/useText'
@@ -87,7 +94,9 @@ const called: Details = (event, { t, person, time }) => {
   const neededAt = text(data['neededAt'])
   return [
     kind === 'early' ? t('case.more.kindEarly') : kind === 'standby' ? t('case.more.kindStandby') : null,
-    caller !== null && caller !== actor.id && person(caller) ? t('case.more.onWordOf', { name: person(caller)?.name ?? '' }) : null,
+    caller !== null && caller !== actor.id && person(caller)
+      ? t('case.more.onWordOf', { name: person(caller)?.name ?? '' })
+      : null,
     neededAt === null ? null : t('case.more.needed', { time: time(neededAt) }),
     free.length === 0 ? null : t('case.more.noneFree', { items: free.join(', ') }),
   ]
@@ -118,12 +127,14 @@ const toSize: Details = ({ data }, { t }) => {
   if (label === null) return [null]
   return [t('case.more.toSize', { name: inSentence(nameOf({ label, variant: text(data['variant']) })) })]
 }
-const isUndoable = (value: unknown): value is UndoableCommand => (UNDOABLE as readonly unknown[]).includes(value)
+const isUndoable = (value: unknown): value is UndoableCommand =>
+  (UNDOABLE as readonly unknown[]).includes(value)
 const undone: Details = ({ data }, { t }) => {
   const command = data['command']
   return [isUndoable(command) ? t('case.more.step', { step: t(`case.undone.${command}`) }) : null]
 }
-const isProblem = (value: unknown): value is ProblemCode => typeof value === 'string' && Object.hasOwn(PROBLEMS, value)
+const isProblem = (value: unknown): value is ProblemCode =>
+  typeof value === 'string' && Object.hasOwn(PROBLEMS, value)
 const problem: Details = ({ data }, { t }) => {
   const code = data['problem']
   return [isProblem(code) ? t('case.more.problem', { problem: t(`problem.${code}`) }) : null]

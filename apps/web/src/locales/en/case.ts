@@ -1,7 +1,11 @@
 import type { EventType } from '@bellpull/contracts'
 import type { PartKind } from '@bellpull/domain'
 
-type Of<Subject extends string> = EventType extends infer T ? (T extends `${Subject}.${infer Name}` ? Name : never) : never
+type Of<Subject extends string> = EventType extends infer T
+  ? T extends `${Subject}.${infer Name}`
+    ? Name
+    : never
+  : never
 
 /** What happened, as sentences that can be read aloud; the time stands before each. */
 const callEvent: Record<Of<'call'>, string> = {
@@ -150,8 +154,16 @@ export default {
     cancel: 'Cancel the case',
     print: 'Print',
   },
-  reopen: { title: 'Reopen the case?', text: 'It is open for calls again, and has to be signed out once more.', yes: 'Reopen' },
-  cancel: { title: 'Cancel the case?', text: 'Everything called for it must have an outcome first.', yes: 'Cancel the case' },
+  reopen: {
+    title: 'Reopen the case?',
+    text: 'It is open for calls again, and has to be signed out once more.',
+    yes: 'Reopen',
+  },
+  cancel: {
+    title: 'Cancel the case?',
+    text: 'Everything called for it must have an outcome first.',
+    yes: 'Cancel the case',
+  },
   signOut: {
     title: 'Sign out {number}',
     ready: 'Everything that came to this case has an outcome.',

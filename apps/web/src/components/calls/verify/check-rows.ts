@@ -174,7 +174,8 @@ function lotRow({ item, label }: CheckState): Row {
         ? words('verify.called.lot', { lot: unit.lot })
         : words('verify.called.lotSerial', { lot: unit.lot, serial: unit.serial })
   const found = label === null ? 'unknown' : packageOn(label, item)
-  const says = found === 'same' ? 'same' : found === 'other' ? 'differs' : unit === null ? 'houseCompares' : 'notOnLabel'
+  const says =
+    found === 'same' ? 'same' : found === 'other' ? 'differs' : unit === null ? 'houseCompares' : 'notOnLabel'
   return {
     key: 'lot',
     called,
@@ -185,7 +186,8 @@ function lotRow({ item, label }: CheckState): Row {
 }
 
 function lotCell({ lot, serial }: ReadLabel): Cell {
-  if (lot === null) return serial === null ? words('verify.label.noLot') : words('verify.label.serialOnly', { serial })
+  if (lot === null)
+    return serial === null ? words('verify.label.noLot') : words('verify.label.serialOnly', { serial })
   return serial === null ? plain(lot) : words('verify.label.lotSerial', { lot, serial })
 }
 

@@ -10,7 +10,8 @@ export interface Checkers {
 
 /** Who may be the second person: of a role that may check, and never the first. */
 export function checkersOf(team: CaseView['team'], people: readonly PersonRef[], meId: string): Checkers {
-  const may = ({ id, role }: Pick<PersonRef, 'id' | 'role'>): boolean => id !== meId && SECOND_CHECKERS.includes(role)
+  const may = ({ id, role }: Pick<PersonRef, 'id' | 'role'>): boolean =>
+    id !== meId && SECOND_CHECKERS.includes(role)
   const onTeam = new Set(team.map(({ id }) => id))
   return {
     team: team.filter(may),

@@ -17,6 +17,12 @@ export interface ReadLabel {
   readonly atMs: number
 }
 
+/** Why the last scan is no label. */
+export type ReadingFault =
+  | { readonly is: 'unreadable'; readonly detail: string }
+  | { readonly is: 'same' }
+  | { readonly is: 'notSent' }
+
 export const scannedLabel = (scan: Scan, label: LabelView, atMs: number): ReadLabel => ({
   input: { scan },
   gtin: label.gtin ?? null,

@@ -35,7 +35,12 @@ export interface Verifying {
 export const needsTwo = (item: ItemView): boolean => CATEGORY_RULES[item.category].check === 'two-people'
 
 /** The label stays covered until the circulator has keyed what was heard. */
-export const isCovered = ({ item, label, method, heard }: Pick<Verifying, 'item' | 'label' | 'method' | 'heard'>) =>
+export const isCovered = ({
+  item,
+  label,
+  method,
+  heard,
+}: Pick<Verifying, 'item' | 'label' | 'method' | 'heard'>) =>
   needsTwo(item) && method === 'spoken' && label !== null && heard === null
 
 /** What is still missing before it counts as verified, in the order of the work; nothing: the button is on. */

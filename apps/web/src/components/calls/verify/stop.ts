@@ -1,6 +1,5 @@
 import type { CallView, ItemView, ProblemCode } from '@bellpull/contracts'
 import type { Heard, Side } from '@bellpull/domain'
-import type { ApiProblem } from '@/api/problem'
 import { nameOf } from '@/composables/item'
 import { dayText } from '@/composables/times'
 import type { ReadLabel } from './label'
@@ -73,11 +72,23 @@ interface Facts {
   readonly heard: Heard | null
 }
 
+/** A refusal of the house: its code, and what it bears beside. */
+export interface Refused {
+  readonly code: ProblemCode
+  readonly members: Readonly<Record<string, unknown>>
+  readonly detail: string | null
+}
+
 /** A refusal of the house as a hard stop: the rule, both values and what to do; `null` for any other refusal. */
-export function stopOf(problem: ApiProblem, facts: Facts): Stop | null {
+export function stopOf(problem: Refused, facts: Facts): Stop | null {
   if (!isStopRule(problem.code)) return null
   const detail = ['label-unreadable', 'second-checker-needed'].includes(problem.code) ? problem.detail : null
-  return { rule: problem.code, ...valuesOf(problem, problem.code, facts), actions: OFFERS[problem.code], detail }
+  return {
+    rule: problem.code,
+    ...valuesOf(problem, problem.code, facts),
+    actions: OFFERS[problem.code],
+    detail,
+  }
 }
 
 /** What was heard is not on the label: said before anything is sent. */
@@ -90,7 +101,7 @@ export const notAsHeard = (facts: Facts & { heard: Heard }): Stop => ({
 
 type Values = Pick<Stop, 'expected' | 'found'>
 
-function valuesOf({ members }: ApiProblem, rule: StopRule, facts: Facts): Values {
+function valuesOf({ members }: Refused, rule: StopRule, facts: Facts): Values {
   const { item, label } = facts
   switch (rule) {
     case 'wrong-item':
@@ -129,7 +140,7 @@ function valuesOf({ members }: ApiProblem, rule: StopRule, facts: Facts): Values
   }
 }
 
-function expiredValues(members: ApiProblem['members'], { item, label }: Facts): Values {
+function expiredValues(members: Refused['members'], { item, label }: Facts): Values {
   const today = text(members['today'])
   const useBy = text(members['useByOn']) ?? label?.useByOn ?? item.unit?.useByOn ?? null
   return {

@@ -8,11 +8,12 @@ import { useOwnStepsStore } from '@/stores/own-steps'
 import { useSessionStore } from '@/stores/session'
 import { useTimes } from '@/composables/useTimes'
 import { nameOf } from '@/composables/item'
-import { checkRows, hasDifference, type Partner } from './check-rows'
-import type { ReadLabel } from './label'
-import { isCovered, METHODS, missingFor, needsTwo, type Method } from './ready'
-import { rememberedChecker, rememberedMethod } from './remembered'
-import { notAsHeard, stopOf, type Stop } from './stop'
+import { useToday } from '@/composables/useToday'
+import { checkRows, hasDifference, type Partner } from '@/components/calls/verify/check-rows'
+import type { ReadLabel } from '@/components/calls/verify/label'
+import { isCovered, METHODS, missingFor, needsTwo, type Method } from '@/components/calls/verify/ready'
+import { rememberedChecker, rememberedMethod } from '@/components/calls/verify/remembered'
+import { notAsHeard, stopOf, type Stop } from '@/components/calls/verify/stop'
 
 export interface Verified {
   readonly call: CallView
@@ -35,7 +36,9 @@ export function useVerification(now: () => Verified, partners: () => readonly Pa
   const looked = ref(false)
   const heard = shallowRef<Heard | null>(null)
   const pin = ref('')
-  const methods = computed<Method[]>(() => METHODS.filter((one) => session.house.secondCheckMethods.includes(one)))
+  const methods = computed<Method[]>(() =>
+    METHODS.filter((one) => session.house.secondCheckMethods.includes(one)),
+  )
   const chosen = rememberedMethod()
   const method = computed<Method>({
     get: () => (methods.value.includes(chosen.value) ? chosen.value : (methods.value[0] ?? 'spoken')),
@@ -69,13 +72,14 @@ export function useVerification(now: () => Verified, partners: () => readonly Pa
   /** A stop shows both values, so there is nothing to cover any more. */
   const covered = computed(() => stop.value === null && isCovered(facts.value))
 
+  const today = useToday()
   const rowsOf = (hidden: boolean) =>
     checkRows({
       ...now(),
       label: label.value,
       covered: hidden,
       looked: looked.value,
-      today: session.house.today,
+      today: today.value,
       partners: partners(),
       nameOfGtin,
       timeOf: time,
@@ -83,7 +87,13 @@ export function useVerification(now: () => Verified, partners: () => readonly Pa
   const rows = computed(() => rowsOf(covered.value))
   const differs = computed(() => hasDifference(rowsOf(false)))
   const missing = computed(() =>
-    missingFor({ ...facts.value, differs: differs.value, looked: looked.value, checkerId: checkerId.value, pin: pin.value }),
+    missingFor({
+      ...facts.value,
+      differs: differs.value,
+      looked: looked.value,
+      checkerId: checkerId.value,
+      pin: pin.value,
+    }),
   )
   const ready = computed(() => missing.value.length === 0 && stop.value === null)
 
@@ -95,7 +105,8 @@ export function useVerification(now: () => Verified, partners: () => readonly Pa
 
   function take(read: ReadLabel): void {
     const before = label.value
-    const same = before !== null && before.lot === read.lot && before.serial === read.serial && before.gtin === read.gtin
+    const same =
+      before !== null && before.lot === read.lot && before.serial === read.serial && before.gtin === read.gtin
     label.value = read
     heard.value = null
     pin.value = ''
@@ -112,7 +123,8 @@ export function useVerification(now: () => Verified, partners: () => readonly Pa
   async function askHouse(read: ReadLabel): Promise<void> {
     const given = await command.onItem(item.value, { name: 'verify', ...read.input })
     const problem = refusal.value?.problem
-    if (!given.ok && (problem?.code === 'not-intact' || problem?.code === 'not-read-back')) command.dismiss(item.value.id)
+    if (!given.ok && (problem?.code === 'not-intact' || problem?.code === 'not-read-back'))
+      command.dismiss(item.value.id)
   }
 
   const second = (): { secondCheck?: SecondCheck } => {
@@ -128,7 +140,12 @@ export function useVerification(now: () => Verified, partners: () => readonly Pa
     const read = label.value
     if (read === null || !ready.value || session.user === null) return
     const { id } = item.value
-    const given = await command.onItem(item.value, { name: 'verify', ...read.input, intact: true, ...second() })
+    const given = await command.onItem(item.value, {
+      name: 'verify',
+      ...read.input,
+      intact: true,
+      ...second(),
+    })
     pin.value = ''
     if (given.ok) steps.note(given.value, [id], session.user.id, clock.nowMs)
   }

@@ -2,6 +2,7 @@ import type { CaseView } from '@bellpull/contracts'
 import { computed, ref, shallowRef, toValue, watch, type MaybeRefOrGetter } from 'vue'
 import { casesApi } from '@/api/cases'
 import { ApiProblem, NotSent } from '@/api/problem'
+import { dayIn } from '@/composables/times'
 import { useCasesStore } from '@/stores/cases'
 import { useSessionStore } from '@/stores/session'
 
@@ -25,10 +26,8 @@ export function useCasesOfDay(day: MaybeRefOrGetter<string>) {
   })
 
   /** The store keeps cases of other days as well, once they have been looked at. */
-  function isOfToday(one: CaseView): boolean {
-    const format = new Intl.DateTimeFormat('sv-SE', { timeZone: session.house.zone })
-    return format.format(new Date(one.startsAt)) === session.house.today
-  }
+  const isOfToday = (one: CaseView): boolean =>
+    dayIn(one.startsAt, session.house.zone) === session.house.today
 
   async function load(): Promise<void> {
     if (isToday.value) return await store.load()

@@ -5,19 +5,16 @@ import { ApiProblem, NotSent } from '@/api/problem'
 import { joinBarcodes, type Reading } from '@/components/stock/fetch/two-barcodes'
 import { useWedgeScanner } from '@/composables/useWedgeScanner'
 import { useClockStore } from '@/stores/clock'
-import { scannedLabel, type ReadLabel } from './label'
-
-/** Why the last scan is no label. */
-export type ReadingFault =
-  | { readonly is: 'unreadable'; readonly detail: string }
-  | { readonly is: 'same' }
-  | { readonly is: 'notSent' }
+import { scannedLabel, type ReadingFault, type ReadLabel } from '@/components/calls/verify/label'
 
 /**
  * Hears the scanner and has the house read what it sent. The first of two barcodes of one label is held until
  * the other one comes, or until somebody says that there is none.
  */
-export function useLabelReading(onLabel: (label: ReadLabel) => void, enabled: MaybeRefOrGetter<boolean> = true) {
+export function useLabelReading(
+  onLabel: (label: ReadLabel) => void,
+  enabled: MaybeRefOrGetter<boolean> = true,
+) {
   const clock = useClockStore()
   const half = ref<{ first: string; label: ReadLabel | null } | null>(null)
   const fault = ref<ReadingFault | null>(null)
