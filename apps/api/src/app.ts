@@ -18,6 +18,7 @@ import { sizingRouter } from './modules/sizing/index.js'
 import { Problem, problemHandler } from './platform/http/problem.js'
 import { requestScope } from './platform/http/scope.js'
 import { authenticate } from './platform/http/session.js'
+import { logReadings } from './platform/http/reading-log.js'
 import { webRouter } from './platform/http/web.js'
 
 /** Pure assembly: no listening, no connecting, no process signals. */
@@ -55,6 +56,7 @@ function signedIn(house: House): Router {
     res.setHeader('Cache-Control', 'no-store')
     next()
   })
+  router.use(logReadings(house.log))
   router.use(callsRouter({ ...house.calls, body: house.readBody, limit: house.limit }))
   router.use(casesRouter(house))
 
