@@ -9,7 +9,9 @@ import { createTheme } from './plugins/vuetify'
 import './assets/tokens.css'
 import './assets/base.css'
 import { followSession, router } from './router'
+import { followPages } from './router/pages'
 
 const app = createApp(App).use(createPinia()).use(i18n).use(createTheme())
 followSession()
+followPages(router)
 app.use(router).mount('#app')

@@ -34,6 +34,7 @@ function aSession() {
 }
 
 beforeEach(() => {
+  localStorage.clear()
   vi.spyOn(http, 'get').mockResolvedValue([])
   vi.spyOn(sessionApi, 'me').mockResolvedValue(ME)
   vi.spyOn(sessionApi, 'signOut').mockResolvedValue(undefined)
@@ -117,6 +118,21 @@ describe('signed in', () => {
     await session.signOut()
     expect(sessionApi.signOut).toHaveBeenCalledTimes(1)
     expect([session.phase, session.why]).toEqual(['signedOut', 'signedOut'])
+  })
+
+  test('whoever signed out without a line is not let in by their cookie; the house is told first', async () => {
+    const { session } = await signedIn()
+    vi.mocked(sessionApi.signOut).mockRejectedValueOnce(new NotSent('offline'))
+    await session.signOut()
+
+    const restore = vi.spyOn(sessionApi, 'restore').mockResolvedValue(SESSION)
+    const later = aSession().session
+    await later.restore()
+    expect([later.phase, restore.mock.calls.length]).toEqual(['signedOut', 0])
+    expect(sessionApi.signOut).toHaveBeenCalledTimes(2)
+    const afterThat = aSession().session
+    await afterThat.restore()
+    expect(afterThat.phase).toBe('signedIn')
   })
 
   test('a refused sign-in leaves nobody signed in', async () => {

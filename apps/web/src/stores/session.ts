@@ -21,6 +21,25 @@ const UNKNOWN_HOUSE: HouseView = {
   secondCheckMethods: ['spoken', 'pin'],
 }
 
+/** The house has yet to hear that somebody signed out on this device; kept over a reload. */
+const signOutDue = {
+  read(): boolean {
+    try {
+      return localStorage.getItem('bellpull.sign-out-due') !== null
+    } catch {
+      return false
+    }
+  },
+  write(due: boolean): void {
+    try {
+      if (due) localStorage.setItem('bellpull.sign-out-due', '1')
+      else localStorage.removeItem('bellpull.sign-out-due')
+    } catch {
+      // A browser that keeps nothing asks for the session again.
+    }
+  },
+}
+
 /** Who is signed in on this screen, and what follows from it. */
 export const useSessionStore = defineStore('session', () => {
   const board = useBoardStore()
@@ -52,6 +71,7 @@ export const useSessionStore = defineStore('session', () => {
   async function signIn(email: string, password: string): Promise<void> {
     const view = await sessionApi.signIn({ email, password })
     http.keep(view)
+    signOutDue.write(false)
     await enter(view.user)
   }
 
@@ -72,12 +92,19 @@ export const useSessionStore = defineStore('session', () => {
   /** Opens the session that the cookie still carries; asked once, when the application starts. */
   async function restore(): Promise<void> {
     try {
+      if (signOutDue.read()) return await finishSignOut()
       const { user: found } = await sessionApi.restore()
       await enter(found)
     } catch (error) {
       // Without a line nobody knows whether the session lives: that is no reason to sign out.
       phase.value = error instanceof ApiProblem && error.status === 401 ? 'signedOut' : 'away'
     }
+  }
+
+  /** Somebody signed out while the line was away: nobody may come in by their cookie. */
+  async function finishSignOut(): Promise<void> {
+    phase.value = 'signedOut'
+    await tellSignOut()
   }
 
   async function enter(found: SignedInUser): Promise<void> {
@@ -97,10 +124,21 @@ export const useSessionStore = defineStore('session', () => {
 
   /** Signs out, here at once and in the house as soon as it hears it. */
   async function signOut(): Promise<void> {
-    const told = sessionApi.signOut().catch(() => undefined)
-    live.disconnect()
-    await told
+    signOutDue.write(true)
+    // The request takes the token with it before it is dropped here.
+    const told = tellSignOut()
     leave('signedOut')
+    await told
+  }
+
+  async function tellSignOut(): Promise<void> {
+    try {
+      await sessionApi.signOut()
+      signOutDue.write(false)
+    } catch (error) {
+      // Refused: there is no session any more.
+      if (error instanceof ApiProblem && error.status === 401) signOutDue.write(false)
+    }
   }
 
   function leave(because: 'ended' | 'signedOut'): void {

@@ -153,6 +153,8 @@ export default {
     dispatch: 'Dispatch',
     fetch: 'To fetch',
     cases: 'Cases',
+    case: 'Case',
+    verify: 'Verify',
     skip: 'Go to the content',
     chooseRoom: 'Choose a room',
   },
@@ -170,7 +172,6 @@ export default {
     hours: '{n} h',
   },
   person: {
-    menu: 'Person: {name}, {role}',
     theme: 'Light or dark',
     system: 'As the device',
     light: 'Light',
@@ -227,5 +228,10 @@ export default {
     hint: 'It may have moved, or your role may not open it.',
     home: 'Go to my screen',
   },
-  updated: 'Bellpull has been renewed. Load the page again.',
+  lostPage: {
+    text: 'This page could not be loaded. Check the line, then try again.',
+    again: 'Try again',
+  },
+  /** In the browser's tab. */
+  pageTitle: '{page}, Bellpull',
 }

@@ -15,6 +15,7 @@ export default {
   signedOut: 'You are signed out.',
   demoTitle: 'Demonstration house',
   demoHint: 'Invented people. One tap signs in.',
-  demoAs: 'Sign in as {name}, {role}',
+  /** Before a name, for screen readers. */
+  demoAs: 'Sign in as',
   noPatients: 'For staff. What you read about a case is logged.',
 }
