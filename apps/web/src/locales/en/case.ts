@@ -124,7 +124,7 @@ export default {
   },
 
   head: {
-    surgeon: 'Surgeon {name}',
+    surgeon: 'surgeon {name}',
     starts: 'planned {time}',
     started: 'started {time}',
     closed: 'signed out {time}',
