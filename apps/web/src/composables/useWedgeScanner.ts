@@ -2,12 +2,17 @@ import type { Scan } from '@bellpull/contracts'
 import { onScopeDispose, ref, toValue, type MaybeRefOrGetter } from 'vue'
 import { useSessionStore } from '@/stores/session'
 import { isHalfLabel, PAIR_WITHIN_MS, pairOf } from './scanPair'
-import { createWedge } from './wedge'
+import { LEAST_OF_LABEL, createWedge } from './wedge'
 
 export interface WedgeOptions {
   /** Scans are heard only while this is true. */
   readonly enabled?: MaybeRefOrGetter<boolean>
+  /** The code of a bin is awaited, which may have two characters only. */
+  readonly bins?: MaybeRefOrGetter<boolean>
 }
+
+/** Fewest characters of a bin's code. */
+const LEAST_OF_BIN = 2
 
 /**
  * Hears a keyboard-wedge scanner anywhere on the page, except while somebody types into a field. A label with
@@ -15,9 +20,12 @@ export interface WedgeOptions {
  *
  * @param onScan gets what the scanner sent, unchanged, without its closing Enter.
  */
-export function useWedgeScanner(onScan: (scan: Scan) => void, { enabled = true }: WedgeOptions = {}) {
+export function useWedgeScanner(
+  onScan: (scan: Scan) => void,
+  { enabled = true, bins = false }: WedgeOptions = {},
+) {
   const session = useSessionStore()
-  const wedge = createWedge()
+  const wedge = createWedge(() => (toValue(bins) ? LEAST_OF_BIN : LEAST_OF_LABEL))
   const half = ref<string | null>(null)
   let timer: ReturnType<typeof setTimeout> | undefined
 

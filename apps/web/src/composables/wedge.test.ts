@@ -87,3 +87,10 @@ describe('a person at the keyboard is left alone', () => {
     expect(type(keys, everyMs).scans).toEqual([])
   })
 })
+
+test('a short code is a bin only where bins are awaited', () => {
+  const read = (wedge: ReturnType<typeof createWedge>) =>
+    ['B', '6', 'Enter'].map((name, i) => wedge.press(key(name, i * 8))).at(-1)
+  expect(read(createWedge())).toEqual({ take: false })
+  expect(read(createWedge(() => 2))).toEqual({ take: true, scan: 'B6' })
+})

@@ -5,8 +5,8 @@
 
 /** The longest pause inside one scan, in milliseconds; a busy page may hold keys up a little. */
 const PAUSE_MS = 80
-/** Fewer characters than this are a person. */
-const LEAST = 6
+/** Fewer characters than this are a person, where only package labels are scanned. */
+export const LEAST_OF_LABEL = 6
 const LONGEST = 512
 
 const GS = '\u001d'
@@ -27,8 +27,12 @@ export type Read =
   /** Part of a scan: the page must not see it. */
   | { readonly take: true; readonly scan: string | null }
 
-/** Separators as scanners send them: ASCII 29, F8, Ctrl+], or Alt+029 on the number pad. */
-export function createWedge() {
+/**
+ * Separators as scanners send them: ASCII 29, F8, Ctrl+], or Alt+029 on the number pad.
+ *
+ * @param least fewest characters of a scan; bins have shorter codes than packages.
+ */
+export function createWedge(least: () => number = () => LEAST_OF_LABEL) {
   let text = ''
   let lastMs = Number.NEGATIVE_INFINITY
   let altDigits = ''
@@ -74,7 +78,7 @@ export function createWedge() {
   function finish(): Read {
     const scan = text
     reset()
-    return scan.length >= LEAST ? { take: true, scan } : { take: false }
+    return scan.length >= least() ? { take: true, scan } : { take: false }
   }
 
   function pass(): Read {
