@@ -50,7 +50,7 @@ export async function at(browser: Browser, house: House, person: Person, opened:
   await page.getByRole('button', { name: `Sign in as ${NAMES[person]}` }).click()
   await expect(page).not.toHaveURL(/sign-in/)
   await page.goto(opened.path)
-  await expect(page.getByText('Live', { exact: true })).toBeVisible()
+  await expect(page.getByText('Live', { exact: true }).first()).toBeVisible()
   return page
 }
 

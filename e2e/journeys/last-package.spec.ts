@@ -24,7 +24,7 @@ test('two rooms call the last package at the same instant: one has it, the other
       room.getByRole('button', { name: new RegExp(`^Call (left|right): head ${last!.label}`) }).click(),
     ),
   )
-  for (const room of rooms) await expect(room.getByText('Waiting to be read back')).toBeVisible()
+  for (const room of rooms) await expect(room.getByText('Waiting to be read back').first()).toBeVisible()
 
   const label = `Head ${last!.label}`
   const both = [

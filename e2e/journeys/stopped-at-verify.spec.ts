@@ -1,7 +1,7 @@
 import { administer } from '../../apps/api/dev/administer.js'
 import { broughtToRoom, caseOf, client, itemsOf, labelOf, sizesInCore } from '../api.js'
 import { expect, test } from '../fixtures.js'
-import { at, nameOf, scan } from '../people.js'
+import { at, scan } from '../people.js'
 import type { RailView } from '@bellpull/contracts'
 
 test('the femur of the other side is stopped, with both values shown', async ({ browser, house }) => {
@@ -59,7 +59,7 @@ test('a spoken check that does not match the label is stopped and nothing is ver
 
   const nurse = await at(browser, house, 'ifeoma', { path: `/verify/${item.id}`, screen: 'tablet' })
   await nurse.getByRole('radio', { name: 'Spoken' }).check({ force: true })
-  await nurse.getByLabel('Who checks').selectOption({ label: `${nameOf('pim')}, scrub` })
+  await nurse.getByLabel('Who checks').selectOption({ label: 'P. Ottershaw, scrub' })
   await scan(nurse, labelOf(item))
   await nurse.getByLabel('Size heard').fill('39')
   await nurse.getByRole('radio', { name: 'EITHER' }).check({ force: true })
