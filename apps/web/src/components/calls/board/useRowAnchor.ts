@@ -1,4 +1,4 @@
-import { onBeforeUnmount, onMounted, ref, watch, type Ref } from 'vue'
+import { onBeforeUnmount, onMounted, watch, type Ref } from 'vue'
 
 /** How long after a touch its row is still held in place, in milliseconds. */
 const TOUCH_HOLDS_MS = 2_500
@@ -12,8 +12,7 @@ const TOUCH_HOLDS_MS = 2_500
  */
 export function useRowAnchor(list: Ref<HTMLElement | null>, rows: () => unknown) {
   /** Room lent above and below the list, in pixels. */
-  const above = ref(0)
-  const below = ref(0)
+  const lent = { above: 0, below: 0 }
   let pointed: string | null = null
   let touchedAtMs = 0
   let isMouse = false
@@ -44,9 +43,14 @@ export function useRowAnchor(list: Ref<HTMLElement | null>, rows: () => unknown)
     return focus !== null && list.value?.contains(focus) ? rowOf(focus) : null
   }
 
+  function lend(more: Partial<typeof lent>): void {
+    Object.assign(lent, more)
+    if (!list.value) return
+    list.value.style.paddingTop = lent.above > 0 ? `${lent.above}px` : ''
+    list.value.style.paddingBottom = lent.below > 0 ? `${lent.below}px` : ''
+  }
   function giveBack(): void {
-    above.value = 0
-    below.value = 0
+    if (lent.above > 0 || lent.below > 0) lend({ above: 0, below: 0 })
   }
 
   watch(
@@ -70,18 +74,12 @@ export function useRowAnchor(list: Ref<HTMLElement | null>, rows: () => unknown)
       const page = document.documentElement
       if (moved > 0) {
         const left = page.scrollHeight - page.clientHeight - page.scrollTop
-        if (left < moved && list.value) {
-          below.value += moved - left
-          list.value.style.paddingBottom = `${below.value}px`
-        }
+        if (left < moved) lend({ below: lent.below + moved - left })
         page.scrollTop += moved
       } else {
         const scrolled = Math.min(page.scrollTop, -moved)
         page.scrollTop -= scrolled
-        if (scrolled < -moved && list.value) {
-          above.value += -moved - scrolled
-          list.value.style.paddingTop = `${above.value}px`
-        }
+        if (scrolled < -moved) lend({ above: lent.above - moved - scrolled })
       }
     },
     { flush: 'post' },
@@ -97,6 +95,4 @@ export function useRowAnchor(list: Ref<HTMLElement | null>, rows: () => unknown)
     list.value?.removeEventListener('pointerdown', point)
     list.value?.removeEventListener('pointerleave', leave)
   })
-
-  return { above, below }
 }
