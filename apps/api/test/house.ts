@@ -275,10 +275,17 @@ export async function openHouse() {
     pin: value,
   })
 
+  /** Spoken on a left case; a PIN costs a hash each time, and only tests of PINs need one. */
+  const heard = (checker: Person, { size }: Product) => ({
+    checkerId: checker.id,
+    method: 'spoken',
+    heard: { size, side: 'left' },
+  })
+
   /** Verified by the circulating nurse, the scrub person being second. */
   async function verified(where: TestCase, unit: Package, options: CallOptions = {}): Promise<CallView> {
     const brought = await broughtIn(where, [unit], options)
-    const checks = { scan: scanOf(unit), intact: true, secondCheck: pin(people.scrub) }
+    const checks = { scan: scanOf(unit), intact: true, secondCheck: heard(people.scrub, unit.product) }
     return done(onItem(people.circulator, itemOf(brought), 'verify', checks))
   }
   const opened = async (where: TestCase, unit: Package): Promise<CallView> =>
@@ -349,7 +356,21 @@ export async function openHouse() {
       as,
       bodyOf,
     },
-    ...{ tryCall, call, onItem, onCall, readBack, broughtIn, pin, verified, opened, board, stored, refused },
+    ...{
+      tryCall,
+      call,
+      onItem,
+      onCall,
+      readBack,
+      broughtIn,
+      pin,
+      heard,
+      verified,
+      opened,
+      board,
+      stored,
+      refused,
+    },
     ...{ unitRow, newTest },
   }
 }

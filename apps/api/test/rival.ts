@@ -3,7 +3,10 @@ import type { TestApi } from './app.js'
 
 /** A transaction of somebody else that holds what the test says, until it is let go. */
 export interface Rival {
+  /** Gives up: what it has changed never happened. */
   letGo(): Promise<void>
+  /** Comes to its end: what it has changed stands. */
+  commit(): Promise<void>
 }
 
 /**
@@ -18,14 +21,13 @@ export async function holdLock(api: TestApi, lock: string, values: unknown[]): P
   await runner.startTransaction()
   await runner.query(lock, values)
   let held = true
-  return {
-    letGo: async () => {
-      if (!held) return
-      held = false
-      await runner.rollbackTransaction()
-      await runner.release()
-    },
+  const end = async (how: 'commitTransaction' | 'rollbackTransaction'): Promise<void> => {
+    if (!held) return
+    held = false
+    await runner[how]()
+    await runner.release()
   }
+  return { letGo: () => end('rollbackTransaction'), commit: () => end('commitTransaction') }
 }
 
 /** Until so many of this database's connections wait for a lock. */

@@ -96,6 +96,20 @@ describe('two rooms call the last package at once', () => {
   })
 })
 
+test('what comes free while a call waits for another package is seen, and not called none free', async () => {
+  const taken = await house.aPackage(head)
+  const comes = await house.aPackage(head, { state: 'quarantined' })
+  rival = await holdLock(
+    house.api,
+    `UPDATE unit SET state = CASE id WHEN $1 THEN 'quarantined' ELSE 'available' END WHERE id IN ($1, $2)`,
+    [taken.id, comes.id],
+  )
+  const call = sent(house.tryCall(mine, [[head, 1]]))
+  await untilWaiting(house.api, 1)
+  await rival.commit()
+  expect(itemOf((await call).body)).toMatchObject({ hold: 'held', unit: { id: comes.id } })
+})
+
 describe('two people give the same command at once', () => {
   test.each(['item', 'call'])(
     'accept of the %s: the first wins, the second is told, one delta',

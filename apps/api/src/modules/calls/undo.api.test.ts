@@ -48,7 +48,7 @@ const BEFORE: Record<UndoableCommand, () => Promise<CallView>> = {
 const bodyOf = (name: UndoableCommand): object =>
   ({
     pull: { scan: scanOf(unit) },
-    verify: { scan: scanOf(unit), intact: true, secondCheck: house.pin(house.people.scrub) },
+    verify: { scan: scanOf(unit), intact: true, secondCheck: house.heard(house.people.scrub, unit.product) },
     notImplanted: { reason: 'sizeChanged' },
   })[name as string] ?? {}
 
