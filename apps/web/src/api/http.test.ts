@@ -107,7 +107,7 @@ describe('a token that has run out', () => {
 
   test('renewed after signing out stays signed out', async () => {
     let answerRefresh: (response: Response) => void = () => undefined
-    const { http } = house((seen) => {
+    const { http, paths } = house((seen) => {
       if (seen.path.endsWith('/refresh')) return new Promise((resolve) => (answerRefresh = resolve))
       return refused(401, 'not-signed-in')
     })
@@ -117,6 +117,8 @@ describe('a token that has run out', () => {
     http.drop()
     answerRefresh(session('new'))
     await outcome
+    // Nothing is asked with the token that came too late.
+    expect(paths()).toEqual(['/board', '/session/refresh'])
   })
 })
 
