@@ -32,7 +32,9 @@ test('a killed server: boards say that they are old, and are right within five s
   const rows = nurse.locator('[data-row]', { hasText: `Head ${head!.label} concentric` })
   await expect(rows).toHaveCount(1, { timeout: RIGHT_AGAIN_MS })
   await house.restartServer()
-  await expect(nurse.getByText('Live', { exact: true }).first()).toBeVisible({ timeout: RIGHT_AGAIN_MS + 3_000 })
+  await expect(nurse.getByText('Live', { exact: true }).first()).toBeVisible({
+    timeout: RIGHT_AGAIN_MS + 3_000,
+  })
   await expect(rows).toHaveCount(1)
 })
 
@@ -81,7 +83,9 @@ test('a call made while the line is away is kept as not sent, and sent only when
   await tablet.getByRole('button', { name: new RegExp(`^Call left: head ${head!.label}`) }).click()
   await expect(tablet.getByText('Not sent').first()).toBeVisible()
   await tablet.context().setOffline(false)
-  await expect(tablet.getByText('Live', { exact: true }).first()).toBeVisible({ timeout: RIGHT_AGAIN_MS + 5_000 })
+  await expect(tablet.getByText('Live', { exact: true }).first()).toBeVisible({
+    timeout: RIGHT_AGAIN_MS + 5_000,
+  })
   await expect(tablet.getByText('The line is back. Is it still wanted?')).toBeVisible()
   expect(await count()).toBe(before)
 

@@ -48,7 +48,7 @@ for (const theme of ['light', 'dark'] as const) {
         name: 'room-tablet',
         person: 'pim',
         path: '/rooms/2',
-        shown: 'This call',
+        shown: 'Called for this case',
         widths: ['tablet', 'desk', 'phone'],
       },
       {

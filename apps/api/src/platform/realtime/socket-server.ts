@@ -59,6 +59,9 @@ export class SocketServer implements Publisher {
       serveClient: false,
       perMessageDeflate: false,
       connectTimeout: 10_000,
+      // A line that died without a word is noticed within nine seconds, by both ends.
+      pingInterval: 5_000,
+      pingTimeout: 4_000,
       // A token is all that a client ever has to send.
       maxHttpBufferSize: 8_192,
     })
