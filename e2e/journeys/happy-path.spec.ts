@@ -1,6 +1,7 @@
 import { caseOf, client, itemCalled, labelOf, sizesInCore } from '../api.js'
 import { expect, test } from '../fixtures.js'
 import { at, PINS, scan } from '../people.js'
+import { picture } from '../pictures.js'
 
 test('head and stem: called early in three touches, read back, pulled, brought, verified by two, implanted', async ({
   browser,
@@ -19,6 +20,7 @@ test('head and stem: called early in three touches, read back, pulled, brought, 
   await test.step('the scrub person calls: head, stem, Call', async () => {
     await tablet.getByRole('option', { name: new RegExp(`^(Head )?${head!.label} concentric,`) }).click()
     await tablet.getByRole('option', { name: new RegExp(`^(Stem )?${stem!.label}( press-fit)?,`) }).click()
+    await picture(tablet, 'room-tablet')
     await tablet.getByRole('button', { name: new RegExp(`^Call left: head ${head!.label}`) }).click()
     await expect(tablet.getByText('Waiting to be read back').first()).toBeVisible()
   })

@@ -1,9 +1,9 @@
 import AxeBuilder from '@axe-core/playwright'
 import type { Page } from '@playwright/test'
-import { join } from 'node:path'
 import { broughtToRoom, caseOf, client, sizesInCore } from '../api.js'
 import { expect, test } from '../fixtures.js'
 import { at, SCREENS } from '../people.js'
+import { picture } from '../pictures.js'
 
 /** Serious and critical findings of axe (WCAG 2.2 A and AA rules), by rule. */
 async function findings(page: Page): Promise<string[]> {
@@ -14,8 +14,6 @@ async function findings(page: Page): Promise<string[]> {
     .filter(({ impact }) => impact === 'serious' || impact === 'critical')
     .map(({ id, nodes }) => `${id}: ${nodes.map((node) => node.target.join(' ')).join('; ')}`)
 }
-
-const picture = (name: string): string => join(import.meta.dirname, '..', 'pictures', `${name}.png`)
 
 /** Nothing may stick out to the side, at any width that a screen is made for. */
 const sticksOut = (page: Page): Promise<number> =>
@@ -93,8 +91,7 @@ for (const theme of ['light', 'dark'] as const) {
         expect.soft(await sticksOut(page), `${screen.name} at ${width}`).toBeLessThanOrEqual(0)
         if (width === screen.widths[0] || width === 'phone')
           expect.soft(await findings(page), `${screen.name} at ${width}`).toEqual([])
-        if (process.env['BELLPULL_PICTURES'] !== undefined)
-          await page.screenshot({ path: picture(`${screen.name}-${width}-${theme}`) })
+        await picture(page, `${screen.name}-${width}-${theme}`)
       }
       await page.context().close()
     }
