@@ -1,34 +1,54 @@
-import { iso, kindsMustFit, person } from './call-view.sql.js'
+import { kindsMustFit, person } from './call-view.sql.js'
 
 /** Columns of one candidate package, as both halves of the pick select them. */
 const CANDIDATE = 'f.id, f.lot, f.serial, f.use_by_on, f.location_id, f.walk_order, f.owner_rank'
 
+/** Instants come as the text that clients read, and are stored as what they are. */
+const NOW = '$5::text::timestamptz'
+const NEEDED_AT = '$12::text::timestamptz'
+
 /**
- * Up to `count` packages of one product that may be held, best first, locked so that nobody else holds them.
- * What another transaction has locked is passed over, never waited for.
+ * Up to `w.count` packages of one product that may be held, best first and numbered from 1, locked so that nobody
+ * else holds them. What another transaction has locked is passed over, never waited for.
  *
  * The order is that of `compareCandidates` in the domain: a *now* call takes what is in the room first,
  * unless another package expires soon; else first to expire, nearest, owner. Two short walks along two
  * ordered partial indexes, never a sort over all the packages of a product.
  */
-const pick = (product: string, count: string): string => `
-  SELECT f.*, f.place = 'room' AS in_room
-    FROM (SELECT *, 'core' AS place
-            FROM (SELECT ${CANDIDATE} FROM unit f
-                   WHERE f.catalogue_item_id = ${product} AND f.state = 'available' AND f.sterile
-                     AND f.place_room_id IS NULL AND f.use_by_on >= $6::date
-                   ORDER BY f.use_by_on, f.walk_order, f.owner_rank, f.id
-                   LIMIT ${count} FOR UPDATE SKIP LOCKED) outside
-          UNION ALL
-          SELECT *, 'room' AS place
-            FROM (SELECT ${CANDIDATE} FROM unit f
-                   WHERE f.catalogue_item_id = ${product} AND f.state = 'available' AND f.sterile
-                     AND f.place_room_id = room_lock.id AND f.use_by_on >= $6::date
-                   ORDER BY f.use_by_on, f.owner_rank, f.id
-                   LIMIT ${count} FOR UPDATE SKIP LOCKED) inside) f
-   ORDER BY CASE WHEN NOT $7::boolean OR f.use_by_on <= $8::date THEN 0 WHEN f.place = 'room' THEN 1 ELSE 2 END,
-            f.use_by_on, CASE WHEN f.place = 'room' THEN 0 ELSE f.walk_order END, f.owner_rank, f.id
-   LIMIT ${count}`
+const PICK = `
+  SELECT *, row_number() OVER () AS nth
+    FROM (SELECT *
+            FROM (SELECT *, false AS in_room
+                    FROM (SELECT ${CANDIDATE} FROM unit f
+                           WHERE f.catalogue_item_id = w.product AND f.state = 'available' AND f.sterile
+                             AND f.place_room_id IS NULL AND f.use_by_on >= $6::date
+                           ORDER BY f.use_by_on, f.walk_order, f.owner_rank, f.id
+                           LIMIT w.count FOR UPDATE SKIP LOCKED) outside
+                  UNION ALL
+                  SELECT *, true
+                    FROM (SELECT ${CANDIDATE} FROM unit f
+                           WHERE f.catalogue_item_id = w.product AND f.state = 'available' AND f.sterile
+                             AND f.place_room_id = still_open.room_id AND f.use_by_on >= $6::date
+                           ORDER BY f.use_by_on, f.owner_rank, f.id
+                           LIMIT w.count FOR UPDATE SKIP LOCKED) inside) f
+           ORDER BY CASE WHEN NOT $7::boolean OR f.use_by_on <= $8::date THEN 0 WHEN f.in_room THEN 1 ELSE 2 END,
+                    f.use_by_on, CASE WHEN f.in_room THEN 0 ELSE f.walk_order END, f.owner_rank, f.id
+           LIMIT w.count) best`
+
+/** $15 to $19 of {@link MAKE_CALL}. @param wanted in order of their lines, each of the catalogue. */
+export function itemParameters(
+  wanted: ReadonlyArray<{ id: string; catalogueItemId: string | null }>,
+): [string[], number[], string[], number[], number[]] {
+  const lines = new Map<string, number[]>()
+  wanted.forEach(({ catalogueItemId }, index) => {
+    const product = catalogueItemId ?? ''
+    lines.set(product, [...(lines.get(product) ?? []), index + 1])
+  })
+  const order = [...lines.values()].flat()
+  const counts = [...lines.values()].map((of) => of.length)
+  const before = counts.map((_, index) => counts.slice(0, index).reduce((sum, count) => sum + count, 0))
+  return [order.map((line) => wanted[line - 1]?.id ?? ''), order, [...lines.keys()], before, counts]
+}
 
 /**
  * A whole call in one statement, for the common case in which everything is in order: the case is open, the
@@ -36,17 +56,20 @@ const pick = (product: string, count: string): string => `
  * the packages, writes call, items, event and answer, and advances the room's revision; all or nothing.
  * In any other case it writes nothing and returns no row, and the careful way (`make-call.ts`) finds out why.
  *
- * The key is locked as `storedAnswer` locks it. The room is locked first, as everywhere, so that revisions follow the order of commit.
+ * The key is locked as `storedAnswer` locks it. The room is locked first, as everywhere, so that revisions follow
+ * the order of commit. `OFFSET 0` keeps a lookup of one row by its key just that: the statement is planned once for
+ * a connection's life, perhaps while the tables were small, and a join could then be planned as a walk over all rows.
  *
  * $1 person, $2 key, $3 path, $4 request hash, $5 now, $6 house's day, $7 wanted now, $8 soon until,
- * $9 case, $10 call, $11 kind, $12 needed at, $13 called by, $14 side, $15 item ids, $16 their products.
+ * $9 case, $10 call, $11 kind, $12 needed at, $13 called by, $14 side, $15 item ids, those of one product together,
+ * $16 their lines, $17 products, and of each: $18 how many items stand before its first, $19 how many it has.
  */
 export const MAKE_CALL = `
 WITH asked AS MATERIALIZED (
   SELECT k.id AS case_id, k.room_id, k.case_number, k.side, r.number,
          ${person('cb')} AS called_by, ${person('eb')} AS entered_by
     FROM surgical_case k
-    JOIN room r ON r.id = k.room_id
+   CROSS JOIN LATERAL (SELECT number FROM room WHERE id = k.room_id OFFSET 0) r
     JOIN person eb ON eb.id = $1::uuid
     JOIN person cb ON cb.id = $13::uuid AND cb.active AND (cb.role = 'surgeon' OR (cb.role = 'scrub' AND
          EXISTS (SELECT 1 FROM case_member m WHERE m.case_id = k.id AND m.person_id = cb.id)))
@@ -58,39 +81,42 @@ WITH asked AS MATERIALIZED (
   SELECT r.id FROM room r WHERE r.id = (SELECT room_id FROM asked) FOR UPDATE
 ), still_open AS MATERIALIZED (
   -- The case may have been signed out while its room was waited for: the lock looks at its newest version.
-  SELECT k.id FROM room_lock, surgical_case k
+  SELECT k.room_id FROM room_lock, surgical_case k
    WHERE k.id = $9::uuid AND k.status IN ('planned', 'inProgress') FOR SHARE OF k
-), wanted AS MATERIALIZED (
-  SELECT w.product, array_agg(w.item_id ORDER BY w.n) AS item_ids, count(*)::int AS count,
-         min(w.n) AS first_line
-    FROM unnest($15::uuid[], $16::uuid[]) WITH ORDINALITY w(item_id, product, n)
-   GROUP BY w.product
 ), picked AS MATERIALIZED (
-  SELECT ci.id AS product, w.item_ids[row_number() OVER (PARTITION BY ci.id ORDER BY
-           CASE WHEN NOT $7::boolean OR f.use_by_on <= $8::date THEN 0 WHEN f.in_room THEN 1 ELSE 2 END,
-           f.use_by_on, CASE WHEN f.in_room THEN 0 ELSE f.walk_order END, f.owner_rank, f.id)] AS item_id,
+  SELECT w.product, ($15::uuid[])[w.before + f.nth] AS item_id, ($16::int[])[w.before + f.nth] AS line_no,
          f.id AS unit_id, f.lot, f.serial, f.use_by_on, l.id AS location_id, l.code, l.zone, l.walk_order,
-         ci.category, ci.ref, ci.gtin, ci.label, ci.variant, ci.side, ci.kind, ci.part_name, ci.size, s.name AS system
-    FROM room_lock
-   CROSS JOIN still_open
-   CROSS JOIN wanted w
-    JOIN catalogue_item ci ON ci.id = w.product AND ci.active AND ci.stocked AND ci.side IN ('either', $14::text)
-    LEFT JOIN implant_system s ON s.id = ci.system_id
-   CROSS JOIN LATERAL (${pick('w.product', 'w.count')}) f
-    JOIN location l ON l.id = f.location_id
+         ci.category, ci.ref, ci.gtin, ci.label, ci.variant, ci.side, ci.kind, ci.part_name, ci.size,
+         (SELECT s.name FROM implant_system s WHERE s.id = ci.system_id) AS system
+    FROM still_open
+   CROSS JOIN unnest($17::uuid[], $18::int[], $19::int[]) w(product, before, count)
+   CROSS JOIN LATERAL (SELECT * FROM catalogue_item c
+                        WHERE c.id = w.product AND c.active AND c.stocked AND c.side IN ('either', $14::text) OFFSET 0) ci
+   CROSS JOIN LATERAL (${PICK}) f
+   CROSS JOIN LATERAL (SELECT * FROM location WHERE id = f.location_id OFFSET 0) l
 ), rev AS (
   UPDATE room SET revision = revision + 1, event_seq = event_seq + 1,
-                  last_event_at = greatest(last_event_at, $5::timestamptz)
+                  last_event_at = greatest(last_event_at, ${NOW})
    WHERE id = (SELECT id FROM room_lock) AND (SELECT count(*) FROM picked) = cardinality($15::uuid[])
   RETURNING id AS room_id, revision, event_seq, last_event_at
+), parts AS MATERIALIZED (
+  -- The parts of the case that theirs must fit: those called before, and these.
+  SELECT i.id, c.called_at, i.line_no, ci.kind
+    FROM call c
+   CROSS JOIN LATERAL (SELECT id, line_no, catalogue_item_id FROM item
+                        WHERE call_id = c.id AND (outcome IS NULL OR outcome = 'implanted') OFFSET 0) i
+   CROSS JOIN LATERAL (SELECT kind FROM catalogue_item WHERE id = i.catalogue_item_id OFFSET 0) ci
+   WHERE c.case_id = $9::uuid
+  UNION ALL
+  SELECT item_id, ${NOW}, line_no, kind FROM picked
 ), answer AS MATERIALIZED (
-  SELECT rev.revision, json_build_object(
+  SELECT rev.room_id, rev.revision, json_build_object(
     'id', $10::uuid,
     'caseId', a.case_id,
     'room', json_build_object('id', a.room_id, 'number', a.number),
     'kind', $11::text,
-    'neededAt', ${iso('$12::timestamptz')},
-    'calledAt', ${iso('$5::timestamptz')},
+    'neededAt', $12::text,
+    'calledAt', $5::text,
     'calledBy', a.called_by,
     'enteredBy', a.entered_by,
     'readBack', NULL,
@@ -115,14 +141,7 @@ WITH asked AS MATERIALIZED (
         'pairs', CASE WHEN p.category = 'implant' THEN (
           SELECT coalesce(json_agg(json_build_object('itemId', o.id, 'result', 'notChecked')
                    ORDER BY o.called_at, o.line_no), '[]'::json)
-            FROM (SELECT i.id, oc.called_at, i.line_no, oci.kind
-                    FROM call oc JOIN item i ON i.call_id = oc.id
-                    JOIN catalogue_item oci ON oci.id = i.catalogue_item_id
-                   WHERE oc.case_id = a.case_id AND (i.outcome IS NULL OR i.outcome = 'implanted')
-                  UNION ALL
-                  SELECT q.item_id, $5::timestamptz, array_position($15::uuid[], q.item_id), q.kind
-                    FROM picked q WHERE q.item_id <> p.item_id) o
-           WHERE ${kindsMustFit('p.kind', 'o.kind')}) ELSE '[]'::json END,
+            FROM parts o WHERE o.id <> p.item_id AND ${kindsMustFit('p.kind', 'o.kind')}) ELSE '[]'::json END,
         'acceptedBy', NULL,
         'offeredTo', NULL,
         'openedUnverified', false,
@@ -142,35 +161,35 @@ WITH asked AS MATERIALIZED (
         'putBack', NULL,
         'walkOrder', p.walk_order,
         'replacesItemId', NULL
-      ) ORDER BY array_position($15::uuid[], p.item_id)) FROM picked p),
+      ) ORDER BY p.line_no) FROM picked p),
     'caseNumber', a.case_number,
     'side', a.side,
-    'confirmedAt', CASE WHEN $11::text = 'confirmed' THEN ${iso('$5::timestamptz')} END,
+    'confirmedAt', CASE WHEN $11::text = 'confirmed' THEN $5::text END,
     'revision', rev.revision,
     'open', true
   )::text AS body
   FROM rev, asked a
 ), new_call AS (
   INSERT INTO call (id, case_id, room_id, kind, needed_at, called_at, called_by, entered_by, confirmed_at, revision)
-  SELECT $10::uuid, $9::uuid, rev.room_id, $11::text, $12::timestamptz, $5::timestamptz, $13::uuid, $1::uuid,
-         CASE WHEN $11::text = 'confirmed' THEN $5::timestamptz END, rev.revision
+  SELECT $10::uuid, $9::uuid, rev.room_id, $11::text, ${NEEDED_AT}, ${NOW}, $13::uuid, $1::uuid,
+         CASE WHEN $11::text = 'confirmed' THEN ${NOW} END, rev.revision
     FROM rev
 ), new_items AS (
   INSERT INTO item (id, call_id, line_no, catalogue_item_id, category, side, hold, unit_id)
-  SELECT p.item_id, $10::uuid, array_position($15::uuid[], p.item_id), p.product, p.category, p.side, 'held', p.unit_id
+  SELECT p.item_id, $10::uuid, p.line_no, p.product, p.category, p.side, 'held', p.unit_id
     FROM rev, picked p
 ), holds AS (
   UPDATE unit SET state = 'held', held_for = p.item_id FROM rev, picked p WHERE unit.id = p.unit_id
 ), new_event AS (
   INSERT INTO event (room_id, seq, type, at, case_id, call_id, actor_id, data)
   SELECT rev.room_id, rev.event_seq, 'call.called', rev.last_event_at, $9::uuid, $10::uuid, $1::uuid,
-         json_build_object('kind', $11::text, 'neededAt', ${iso('$12::timestamptz')}, 'calledBy', $13::uuid,
+         json_build_object('kind', $11::text, 'neededAt', $12::text, 'calledBy', $13::uuid,
            'items', (SELECT json_agg(json_build_object('itemId', p.item_id, 'label', p.label, 'variant', p.variant,
-                       'hold', 'held', 'unitId', p.unit_id) ORDER BY array_position($15::uuid[], p.item_id)) FROM picked p))::jsonb
+                       'hold', 'held', 'unitId', p.unit_id) ORDER BY p.line_no) FROM picked p))::jsonb
     FROM rev
 ), new_key AS (
   -- A rival with the same key breaks the whole statement here: nothing is half done.
   INSERT INTO idempotency_key (person_id, key, method, path, request_hash, status, answer, created_at)
-  SELECT $1::uuid, $2::uuid, 'POST', $3::text, $4::bytea, 201, answer.body, $5::timestamptz FROM answer
+  SELECT $1::uuid, $2::uuid, 'POST', $3::text, $4::bytea, 201, answer.body, ${NOW} FROM answer
 )
-SELECT a.room_id AS "roomId", answer.revision, answer.body FROM answer, asked a`
+SELECT room_id AS "roomId", revision, body FROM answer`

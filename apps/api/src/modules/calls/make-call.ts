@@ -4,7 +4,7 @@ import { CATEGORY_RULES, NOW_WITHIN_MS, type CaseSide, type Category, type Side 
 import type { CallTransaction, Tap } from './call-transaction.js'
 import type { CallWork } from './call-work.js'
 import { holdFor, roomsWithEarlyHolds, soonUntil } from './holds.js'
-import { MAKE_CALL } from './make-call.sql.js'
+import { itemParameters, MAKE_CALL } from './make-call.sql.js'
 import { refusedText } from './refused-text.js'
 import type { CallRow } from './rows.js'
 import { databaseFault } from '../../platform/db/sql.js'
@@ -73,18 +73,17 @@ export class CallMaker {
           tap.use.key,
           tap.use.path,
           tap.use.requestHash,
-          now,
+          now.toISOString(),
           today,
           isWantedNow(body),
           soonUntil(today),
           caseId,
           randomUUID(),
           body.kind,
-          neededAt(body, now),
+          neededAt(body, now)?.toISOString() ?? null,
           body.calledBy,
           body.side,
-          wanted.map((item) => item.id),
-          wanted.map((item) => item.catalogueItemId),
+          ...itemParameters(wanted),
         ],
       })
       const made = rows[0]
