@@ -39,7 +39,8 @@ const nowMs = (): number => Number(process.hrtime.bigint()) / 1e6
 
 /** Everything that has to be known of an event stands at its beginning. */
 const HEAD_BYTES = 220
-const EVENT = /"roomId":"([0-9a-f-]{36})","revision":(\d+),"event":"[\w.]+","call":\{"id" ?: ?"([0-9a-f-]{36})"/
+const EVENT =
+  /"roomId":"([0-9a-f-]{36})","revision":(\d+),"event":"[\w.]+","call":\{"id" ?: ?"([0-9a-f-]{36})"/
 
 async function listen({ name, speaks, port, tokens, count }: Listen): Promise<void> {
   const audience: Audience = {

@@ -60,7 +60,7 @@ WITH picked AS MATERIALIZED (
     FROM unnest($10::uuid[], $11::uuid[]) WITH ORDINALITY w(item_id, product_id, n)
     JOIN product p ON p.id = w.product_id
    CROSS JOIN LATERAL (SELECT f.id AS unit_id, f.lot, f.serial, f.use_by_on, f.place FROM unit f
-                        WHERE f.product_id = w.product_id AND f.held_for IS NULL AND f.use_by_on >= $4::date
+                        WHERE f.product_id = w.product_id AND f.held_for IS NULL AND f.use_by_on >= $4::timestamptz::date
                         ORDER BY f.use_by_on, f.id LIMIT 1 FOR UPDATE SKIP LOCKED) u
 ), rev AS (
   UPDATE room r SET revision = r.revision + 1
