@@ -1,5 +1,5 @@
 import type { CallView, ItemView } from '@bellpull/contracts'
-import { CATEGORY_RULES, ESCALATE_AFTER_MS } from '@bellpull/domain'
+import { CATEGORY_RULES } from '@bellpull/domain'
 import { shortName } from '@/composables/names'
 import type { TextKey } from '@/composables/useText'
 import type { Viewer } from './next-action'
@@ -85,7 +85,7 @@ export function cordNote(row: BoardRow, nowMs: number, place: string, timeOfDay:
     }
     if (escalation > 0)
       return say('note.notAccepted', {
-        minutes: (ESCALATE_AFTER_MS[escalation - 1] ?? 0) / 60_000,
+        minutes: minutesSince(call.confirmedAt ?? call.calledAt, nowMs),
         place: where,
       })
     return say(walk.length > 1 ? `note.${call.kind}SameWalk` : `note.${call.kind}`, { place: where })
