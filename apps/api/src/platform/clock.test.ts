@@ -1,5 +1,5 @@
-import { describe, expect, it } from 'vitest'
-import { boundsOfDay, dayIn } from './clock.js'
+import { afterEach, describe, expect, it, vi } from 'vitest'
+import { boundsOfDay, dayIn, systemClock } from './clock.js'
 
 describe('the house’s day', () => {
   it.each([
@@ -19,5 +19,26 @@ describe('the house’s day', () => {
   ])('in %s, %s runs from %s to %s', (zone, day, from, to) => {
     const bounds = boundsOfDay(zone, day)
     expect([bounds.from.toISOString(), bounds.to.toISOString()]).toEqual([from, to])
+  })
+})
+
+describe('the machine’s clock', () => {
+  afterEach(() => void vi.useRealTimers())
+
+  it.each([
+    ['goes on', ['2026-10-25T21:59:59.999Z', '2026-10-25'], ['2026-10-25T23:00:00.000Z', '2026-10-26']],
+    [
+      'stands at the last moment',
+      ['2026-10-25T22:59:59.999Z', '2026-10-25'],
+      ['2026-10-25T22:59:59.999Z', '2026-10-25'],
+    ],
+    ['is put back', ['2026-10-26T08:00:00.000Z', '2026-10-26'], ['2026-10-24T08:00:00.000Z', '2026-10-24']],
+  ])('knows the house’s day when time %s', (_what, ...moments) => {
+    vi.useFakeTimers()
+    const clock = systemClock('Europe/Brussels')
+    for (const [instant, day] of moments) {
+      vi.setSystemTime(instant!)
+      expect([clock.now().toISOString(), clock.today()]).toEqual([instant, day])
+    }
   })
 })

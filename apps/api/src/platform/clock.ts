@@ -23,7 +23,19 @@ export function boundsOfDay(zone: string, day: string): { from: Date; to: Date }
 }
 
 /** The machine's clock. @param zone the house's IANA time zone. */
-export const systemClock = (zone: string): Clock => ({
-  now: () => new Date(),
-  today: () => dayIn(zone, new Date()),
-})
+export function systemClock(zone: string): Clock {
+  // Nearly every request asks for the day, and it changes once a day.
+  let known = { day: '', fromMs: 0, toMs: 0 }
+  return {
+    now: () => new Date(),
+    today() {
+      const now = new Date()
+      if (now.getTime() < known.fromMs || now.getTime() >= known.toMs) {
+        const day = dayIn(zone, now)
+        const { from, to } = boundsOfDay(zone, day)
+        known = { day, fromMs: from.getTime(), toMs: to.getTime() }
+      }
+      return known.day
+    },
+  }
+}

@@ -15,6 +15,8 @@ const RUNNING_AT_MOST_MS = 60_000
 /** Stored in place of a status while the first request is running. */
 const RUNNING = 0
 
+const uuid = z.uuid()
+
 /** Whose key it is, and for what. */
 export interface KeyUse {
   readonly personId: string
@@ -43,7 +45,7 @@ export function readIdempotencyKey(req: Request, options: { required: boolean })
     if (options.required) throw new Problem('idempotency-key-missing')
     return null
   }
-  const key = z.uuid().safeParse(given)
+  const key = uuid.safeParse(given)
   if (!key.success)
     throw new Problem('invalid-input', {
       detail: 'The Idempotency-Key header must be an id (UUID).',
