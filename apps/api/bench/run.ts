@@ -132,7 +132,7 @@ async function report(
   const machine = `${cpus().length} cores, ${Math.round(totalmem() / 2 ** 30)} GiB, PostgreSQL ${version.server_version.split(' ')[0]}, Node ${process.versions.node}`
   const costTable =
     costs.length > 0
-      ? `\n\nWhat one call costs, 8 at once:\n\n${markdown(['', 'transactions', 'WAL flushes', 'WAL records', 'WAL kB', 'CPU ms in the server process'], costs)}`
+      ? `\n\nWhat one call costs, 8 at once:\n\n${markdown(['', 'transactions', 'WAL flushes', 'WAL records', 'WAL kB', 'CPU ms in the server', 'CPU ms in its database sessions'], costs)}`
       : ''
   return `# Last measurement
 
