@@ -1,5 +1,4 @@
-import { kindsMustFit } from './call-view.sql.js'
-import { list, number, object, raw, toSql, value, word } from './json.sql.js'
+import { kindsMustFit, person } from './call-view.sql.js'
 
 /** Columns of one candidate package, as both halves of the pick select them. */
 const CANDIDATE = 'f.id, f.lot, f.serial, f.use_by_on, f.location_id, f.walk_order, f.owner_rank'
@@ -51,104 +50,6 @@ export function itemParameters(
   return [order.map((line) => wanted[line - 1]?.id ?? ''), order, [...lines.keys()], before, counts]
 }
 
-const person = (alias: string) =>
-  object({
-    id: word(`${alias}.id`),
-    initials: value(`${alias}.initials`),
-    name: value(`${alias}.name`),
-    role: word(`${alias}.role`),
-  })
-
-/** The parts of the case that part `p` must fit. No rule has been run on them, and the answer says so. */
-const PAIRS = list(
-  object({ itemId: word('o.id'), result: 'notChecked' }),
-  `FROM parts o WHERE p.category = 'implant' AND o.id <> p.item_id AND ${kindsMustFit('p.kind', 'o.kind')}`,
-  'o.called_at, o.line_no',
-)
-
-/** A new item of `picked p`, as `itemView` of the contracts. */
-const ITEM = object({
-  id: word('p.item_id'),
-  callId: word('$10::uuid'),
-  catalogueItemId: word('p.product'),
-  category: word('p.category'),
-  ref: value('p.ref'),
-  label: value('p.label'),
-  variant: value('p.variant'),
-  side: word('p.side'),
-  stage: 'called',
-  outcome: null,
-  hold: 'held',
-  unit: object({
-    id: word('p.unit_id'),
-    gtin: word('p.gtin'),
-    lot: value('p.lot'),
-    serial: value('p.serial'),
-    useByOn: value('p.use_by_on'),
-    location: object({ id: word('p.location_id'), code: value('p.code'), zone: word('p.zone') }),
-  }),
-  alternatives: [],
-  heldBy: [],
-  pairs: PAIRS,
-  acceptedBy: null,
-  offeredTo: null,
-  openedUnverified: false,
-  version: 1,
-  kind: word('p.kind'),
-  partName: value('p.part_name'),
-  size: value('p.size'),
-  system: value('p.system'),
-  acceptedAt: null,
-  pulledAt: null,
-  inRoomAt: null,
-  verifiedAt: null,
-  openedAt: null,
-  settledAt: null,
-  typed: false,
-  reason: null,
-  putBack: null,
-  walkOrder: number('p.walk_order'),
-  replacesItemId: null,
-})
-
-/** The new call, of `rev` and `asked a`, as `callView` of the contracts. */
-const CALL = object({
-  id: word('$10::uuid'),
-  caseId: word('a.case_id'),
-  room: object({ id: word('a.room_id'), number: number('a.number') }),
-  kind: word('$11::text'),
-  neededAt: value('$12::text'),
-  calledAt: word('$5::text'),
-  calledBy: raw('a.called_by'),
-  enteredBy: raw('a.entered_by'),
-  readBack: null,
-  version: 1,
-  items: list(ITEM, 'FROM picked p', 'p.line_no'),
-  caseNumber: value('a.case_number'),
-  side: word('a.side'),
-  confirmedAt: value("CASE WHEN $11::text = 'confirmed' THEN $5::text END"),
-  revision: number('rev.revision'),
-  open: true,
-})
-
-/** What the log keeps of it. */
-const EVENT = object({
-  kind: word('$11::text'),
-  neededAt: value('$12::text'),
-  calledBy: word('$13::uuid'),
-  items: list(
-    object({
-      itemId: word('p.item_id'),
-      label: value('p.label'),
-      variant: value('p.variant'),
-      hold: 'held',
-      unitId: word('p.unit_id'),
-    }),
-    'FROM picked p',
-    'p.line_no',
-  ),
-})
-
 /**
  * A whole call in one statement, for the common case in which everything is in order: the case is open, the
  * caller may call, every product is known and stocked, and a package is free for each item. It then holds
@@ -166,7 +67,7 @@ const EVENT = object({
 export const MAKE_CALL = `
 WITH asked AS MATERIALIZED (
   SELECT k.id AS case_id, k.room_id, k.case_number, k.side, r.number,
-         ${toSql(person('cb'))} AS called_by, ${toSql(person('eb'))} AS entered_by
+         ${person('cb')} AS called_by, ${person('eb')} AS entered_by
     FROM surgical_case k
    CROSS JOIN LATERAL (SELECT number FROM room WHERE id = k.room_id OFFSET 0) r
     JOIN person eb ON eb.id = $1::uuid
@@ -209,7 +110,64 @@ WITH asked AS MATERIALIZED (
   UNION ALL
   SELECT item_id, ${NOW}, line_no, kind FROM picked
 ), answer AS MATERIALIZED (
-  SELECT rev.room_id, rev.revision, ${toSql(CALL)} AS body
+  SELECT rev.room_id, rev.revision, json_build_object(
+    'id', $10::uuid,
+    'caseId', a.case_id,
+    'room', json_build_object('id', a.room_id, 'number', a.number),
+    'kind', $11::text,
+    'neededAt', $12::text,
+    'calledAt', $5::text,
+    'calledBy', a.called_by,
+    'enteredBy', a.entered_by,
+    'readBack', NULL,
+    'version', 1,
+    'items', (SELECT json_agg(json_build_object(
+        'id', p.item_id,
+        'callId', $10::uuid,
+        'catalogueItemId', p.product,
+        'category', p.category,
+        'ref', p.ref,
+        'label', p.label,
+        'variant', p.variant,
+        'side', p.side,
+        'stage', 'called',
+        'outcome', NULL,
+        'hold', 'held',
+        'unit', json_build_object(
+          'id', p.unit_id, 'gtin', p.gtin, 'lot', p.lot, 'serial', p.serial, 'useByOn', p.use_by_on,
+          'location', json_build_object('id', p.location_id, 'code', p.code, 'zone', p.zone)),
+        'alternatives', '[]'::json,
+        'heldBy', '[]'::json,
+        'pairs', CASE WHEN p.category = 'implant' THEN (
+          SELECT coalesce(json_agg(json_build_object('itemId', o.id, 'result', 'notChecked')
+                   ORDER BY o.called_at, o.line_no), '[]'::json)
+            FROM parts o WHERE o.id <> p.item_id AND ${kindsMustFit('p.kind', 'o.kind')}) ELSE '[]'::json END,
+        'acceptedBy', NULL,
+        'offeredTo', NULL,
+        'openedUnverified', false,
+        'version', 1,
+        'kind', p.kind,
+        'partName', p.part_name,
+        'size', p.size,
+        'system', p.system,
+        'acceptedAt', NULL,
+        'pulledAt', NULL,
+        'inRoomAt', NULL,
+        'verifiedAt', NULL,
+        'openedAt', NULL,
+        'settledAt', NULL,
+        'typed', false,
+        'reason', NULL,
+        'putBack', NULL,
+        'walkOrder', p.walk_order,
+        'replacesItemId', NULL
+      ) ORDER BY p.line_no) FROM picked p),
+    'caseNumber', a.case_number,
+    'side', a.side,
+    'confirmedAt', CASE WHEN $11::text = 'confirmed' THEN $5::text END,
+    'revision', rev.revision,
+    'open', true
+  )::text AS body
   FROM rev, asked a
 ), new_call AS (
   INSERT INTO call (id, case_id, room_id, kind, needed_at, called_at, called_by, entered_by, confirmed_at, revision)
@@ -225,7 +183,9 @@ WITH asked AS MATERIALIZED (
 ), new_event AS (
   INSERT INTO event (room_id, seq, type, at, case_id, call_id, actor_id, data)
   SELECT rev.room_id, rev.event_seq, 'call.called', rev.last_event_at, $9::uuid, $10::uuid, $1::uuid,
-         (${toSql(EVENT)})::jsonb
+         json_build_object('kind', $11::text, 'neededAt', $12::text, 'calledBy', $13::uuid,
+           'items', (SELECT json_agg(json_build_object('itemId', p.item_id, 'label', p.label, 'variant', p.variant,
+                       'hold', 'held', 'unitId', p.unit_id) ORDER BY p.line_no) FROM picked p))::jsonb
     FROM rev
 ), new_key AS (
   -- A rival with the same key breaks the whole statement here: nothing is half done.
