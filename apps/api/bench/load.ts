@@ -80,6 +80,9 @@ function post(agent: Agent, port: number, tap: TapPlan, token: string, key: stri
   })
 }
 
+const refusal = (name: string, { status, text }: Reply): Error =>
+  new Error(`${name} answered ${status}: ${text.slice(0, 400)}`)
+
 const idIn = (reply: Reply): string => (JSON.parse(reply.text) as { id: string }).id
 
 /** One call that has to succeed. */
@@ -89,7 +92,7 @@ async function call(name: string): Promise<Acknowledged & { tookMs: number }> {
   const tappedMs = nowMs()
   const reply = await post(agent, port, tap, tokens[tap.person] ?? '', randomUUID())
   const tookMs = nowMs() - tappedMs
-  if (reply.status !== 201) throw new Error(`${name} answered ${reply.status}: ${reply.text.slice(0, 400)}`)
+  if (reply.status !== 201 || reply.text.includes('"noneFree"')) throw refusal(name, reply)
   const id = idIn(reply)
   ids.push(id)
   return { id, tappedMs, tookMs }
@@ -136,52 +139,53 @@ async function paced({ aim, calls, everyMs }: Paced): Promise<Acknowledged[]> {
   return await Promise.all(running)
 }
 
-/**
- * Calls on while the database dies and comes back: each tap is sent again with its key until it is answered 201.
- *
- * @returns how many taps there were, how many of them had to be sent again, and every id, one a tap.
- */
+export interface Stubborn {
+  readonly taps: number
+  /** How many of them had to be sent again. */
+  readonly again: number
+}
+
+let enough = false
+
+/** Calls on while the database dies and comes back, until it is told that it is enough: each tap is sent again with its key until it is answered 201. */
 async function stubborn({
   aim,
   atOnce,
-  forMs,
   giveUpMs,
 }: {
   aim: string
   atOnce: number
-  forMs: number
   giveUpMs: number
-}) {
+}): Promise<Stubborn> {
   const { taps, agent, port, tokens, ids } = aimOf(aim)
-  const until = nowMs() + forMs
   let again = 0
   let count = 0
-  const refused = new Map<number, number>()
+  enough = false
+  const insist = async (): Promise<void> => {
+    const tap = taps.next()
+    const key = randomUUID()
+    const giveUp = nowMs() + giveUpMs
+    count += 1
+    for (;;) {
+      const reply = await post(agent, port, tap, tokens[tap.person] ?? '', key).catch(() => null)
+      if (reply?.status === 201) {
+        ids.push(idIn(reply))
+        return
+      }
+      // 409 says that the first one is still running.
+      if (reply && reply.status < 500 && reply.status !== 409) throw refusal(aim, reply)
+      again += 1
+      if (nowMs() > giveUp) throw new Error(`${aim} did not come back in ${giveUpMs} ms`)
+      // Slow enough to stay below the house's limit of calls a person.
+      await wait(400)
+    }
+  }
   await Promise.all(
     Array.from({ length: atOnce }, async () => {
-      while (nowMs() < until) {
-        const tap = taps.next()
-        const key = randomUUID()
-        const giveUp = nowMs() + giveUpMs
-        count += 1
-        for (;;) {
-          const reply = await post(agent, port, tap, tokens[tap.person] ?? '', key).catch(() => null)
-          if (reply?.status === 201) {
-            ids.push(idIn(reply))
-            break
-          }
-          if (reply && reply.status < 500 && reply.status !== 409)
-            throw new Error(`${aim} answered ${reply.status}: ${reply.text.slice(0, 400)}`)
-          refused.set(reply?.status ?? 0, (refused.get(reply?.status ?? 0) ?? 0) + 1)
-          again += 1
-          if (nowMs() > giveUp) throw new Error(`${aim} did not come back in ${giveUpMs} ms`)
-          // Slow enough to stay below the house's limit of calls a person.
-          await wait(400)
-        }
-      }
+      while (!enough) await insist()
     }),
   )
-  return { taps: count, again, refused }
+  return { taps: count, again }
 }
 
 async function get({ aim, path, times }: { aim: string; path: string; times: number }): Promise<number[]> {
@@ -219,6 +223,9 @@ answer({
   inTurn,
   paced,
   stubborn,
+  enough(): void {
+    enough = true
+  },
   get,
   /** Ids of every call of an aim that was answered 201. */
   acknowledged: (name: string): string[] => aimOf(name).ids,

@@ -4,33 +4,47 @@ import { administer } from '../../dev/administer.js'
 import type { Child } from '../child.js'
 import { checkHouse } from '../checks.js'
 import type { House } from '../houses.js'
+import type { Stubborn } from '../load.js'
 
 const AT_ONCE = 8
-const RUN_MS = 6_000
-const KILLS_AT_MS = [1_500, 3_500]
-const GIVE_UP_MS = 30_000
+const KILLS = 2
+/** Calls between two kills. */
+const CALLS_BETWEEN = 200
+/** Recovery reads all that was written since the last checkpoint; this long is a failure. */
+const COMES_BACK_MS = 60_000
 
 /**
  * Kills the database twice under load, as a machine that fails would: PostgreSQL throws away all that is in memory
  * and recovers from its log. Every tap is sent again until it is acknowledged; then everything must be there, once.
  */
 export async function measureCrash(load: Child, house: House): Promise<{ wrong: number; words: string }> {
-  const running = load.ask<{ taps: number; again: number }>('stubborn', {
+  const ids = (): Promise<string[]> => load.ask<string[]>('acknowledged', house.name)
+  const running = load.ask<Stubborn>('stubborn', {
     aim: house.name,
     atOnce: AT_ONCE,
-    forMs: RUN_MS,
-    giveUpMs: GIVE_UP_MS,
+    giveUpMs: COMES_BACK_MS,
   })
-  const start = Date.now()
-  for (const at of KILLS_AT_MS) {
-    await wait(Math.max(0, start + at - Date.now()))
-    await killDatabase(house.url)
-  }
-  const { taps, again } = await running
-  const { wrong, words } = await checkHouse(house.url, await load.ask<string[]>('acknowledged', house.name))
-  return {
-    wrong,
-    words: `database killed ${KILLS_AT_MS.length} times under ${taps} taps, ${again} of them sent again; ${words}`,
+  const [{ taps, again }] = await Promise.all([
+    running,
+    killUnderLoad(load, house.url, async () => (await ids()).length),
+  ])
+  const { wrong, words } = await checkHouse(house.url, await ids())
+  return { wrong, words: `database killed ${KILLS} times under ${taps} taps, ${again} sent again; ${words}` }
+}
+
+async function killUnderLoad(load: Child, url: string, count: () => Promise<number>): Promise<void> {
+  try {
+    for (let kill = 0; kill <= KILLS; kill += 1) {
+      const wanted = (await count()) + CALLS_BETWEEN
+      const deadline = Date.now() + COMES_BACK_MS
+      while ((await count()) < wanted) {
+        if (Date.now() > deadline) throw new Error('calls did not go on after the database was killed')
+        await wait(100)
+      }
+      if (kill < KILLS) await killDatabase(url)
+    }
+  } finally {
+    await load.ask('enough')
   }
 }
 

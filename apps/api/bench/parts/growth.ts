@@ -38,7 +38,7 @@ export async function measureGrowth(cluster: Cluster, load: Child, options: Opti
     return house
   }
   const small = await open('small', stock(FEW_UNITS, 0))
-  const full = await open('full', stock(options.manyUnits, 0))
+  const full = await open('many', stock(options.manyUnits, 0))
   const old = await open('old', stock(FEW_UNITS, options.manyPast))
   const houses = [small, full, old]
   try {
